@@ -5,7 +5,6 @@
 use crate::check::{Check, Finding};
 use crate::parts::Amplifier;
 use crate::rail::Rail;
-use crate::reference::Bias;
 
 /// An amplifier at a rail: everything that does not depend on the reference or the transistor.
 ///
@@ -103,15 +102,15 @@ impl AmplifierAtRail {
     }
 
     /// `amp-input-low`: the lowest reference voltage lies above the bottom of the input range.
-    pub fn amp_input_low(&self, bias: &Bias) -> Finding {
-        Finding { check: Check::AmpInputLow, asked: self.part.vcm_low_v, allowed: bias.vz_lo_v }
+    pub fn amp_input_low(&self, vz_lo_v: f64) -> Finding {
+        Finding { check: Check::AmpInputLow, asked: self.part.vcm_low_v, allowed: vz_lo_v }
     }
 
     /// `amp-input-high`: the highest reference voltage lies below the top of the input range.
-    pub fn amp_input_high(&self, bias: &Bias, rail: &Rail) -> Finding {
+    pub fn amp_input_high(&self, vz_hi_v: f64, rail: &Rail) -> Finding {
         Finding {
             check: Check::AmpInputHigh,
-            asked: bias.vz_hi_v + self.part.vcm_high_v,
+            asked: vz_hi_v + self.part.vcm_high_v,
             allowed: rail.feed.min_v,
         }
     }

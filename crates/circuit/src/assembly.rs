@@ -34,6 +34,60 @@ impl Aim {
     }
 }
 
+/// Room left for rounding where a necessary condition turns something away.
+const ROUNDING_ROOM: f64 = 1e-8;
+
+impl Aim {
+    /// The band (bottom, top) that bounds a reference whatever divider follows it, V.
+    ///
+    /// A divider multiplies the highest reference voltage by at least as much as the lowest one, and
+    /// by at least 1. Fixed output: VLlo ≥ V(1 − τ) and VLhi ≤ V(1 + τ). Adjustable, at the low end
+    /// of the knob: Vlow ≥ low_stop and Vfloor ≤ adjust_from.
+    fn band_v(&self) -> (f64, f64) {
+        match self {
+            Aim::Fixed(FixedAim { voltage_v, tolerance }) => {
+                (voltage_v * (1.0 - tolerance), voltage_v * (1.0 + tolerance))
+            }
+            Aim::Adjustable(AdjustableAim { from_v, low_stop_v, .. }) => (*low_stop_v, *from_v),
+        }
+    }
+
+    /// A reference between `vz_lo_v` and `vz_hi_v` may suit this output beside an amplifier error,
+    /// as far as can be told before a divider is chosen: false only where no divider does.
+    ///
+    /// `line_spread` is the least (hi/lo)² of the lines that a divider may come from: khi ≥
+    /// line_spread·klo. With κ the least klo that lifts the low end to the bottom of the band,
+    /// (1 + κ·line_spread)(VZhi + ε) must not exceed the top.
+    pub fn may_suit(&self, vz_lo_v: f64, vz_hi_v: f64, error_v: f64, line_spread: f64) -> bool {
+        let (bottom, top) = self.band_v();
+        let (least, most) = (vz_lo_v - error_v, vz_hi_v + error_v);
+        let gain = if bottom > 0.0 { bottom / least } else { 1.0 };
+        let kappa = (gain - 1.0).max(0.0);
+        least > 0.0 && (1.0 + kappa * line_spread) * most <= top * (1.0 + ROUNDING_ROOM)
+    }
+
+    /// The same for a set of references of which only the least relative width `spread` = VZhi/VZlo
+    /// and the highest `vz_lo_v` and lowest `vz_hi_v` of any of them are known.
+    pub fn may_suit_any(&self, vz_lo_v: f64, vz_hi_v: f64, spread: f64, error_v: f64) -> bool {
+        let (bottom, top) = self.band_v();
+        let least = vz_lo_v - error_v;
+        // (s·VZlo + ε)/(VZlo − ε) falls as VZlo rises, so the highest VZlo gives a bound for all.
+        let wide = (spread * vz_lo_v + error_v) * bottom <= top * least * (1.0 + ROUNDING_ROOM);
+        least > 0.0 && wide && vz_hi_v + error_v <= top * (1.0 + ROUNDING_ROOM)
+    }
+
+    /// A link may serve as RF or RX: the reference itself may lie in the band.
+    pub fn may_follow(&self, vz_lo_v: f64, vz_hi_v: f64) -> bool {
+        match self {
+            Aim::Adjustable(_) => true,
+            Aim::Fixed(_) => {
+                let (bottom, top) = self.band_v();
+                vz_hi_v <= top * (1.0 + ROUNDING_ROOM) && vz_lo_v >= bottom * (1.0 - ROUNDING_ROOM)
+            }
+        }
+    }
+}
+
 /// The output's figures in the form of the rail.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum OutputFigures {
@@ -92,8 +146,8 @@ pub fn input_checks(
     rail: &Rail,
     tally: &mut impl Tally,
 ) -> ControlFlow<()> {
-    tally.take(amp.amp_input_low(bias))?;
-    tally.take(amp.amp_input_high(bias, rail))?;
+    tally.take(amp.amp_input_low(bias.vz_lo_v))?;
+    tally.take(amp.amp_input_high(bias.vz_hi_v, rail))?;
     let input = amp.input_error(bias.vz_hi_v);
     let current = DividerCurrent::new(bias, &network.divider.ri, input);
     tally.take(current.divider_window(&rail.divider))?;

@@ -345,27 +345,43 @@ pub fn chosen_rz(zener: &ZenerAtRail, line: &LineAtRail, rail: &Rail) -> Option<
 /// Room left for rounding where a necessary condition cuts values away.
 const ROUNDING_ROOM: f64 = 1e-8;
 
-/// The places [from, to) of `line.values` outside which some check surely fails.
-///
-/// With V0hi(0) ≤ V0hi and V0lo ≤ V0lo(0), see [`ZenerAtRail::test_voltage`]:
-/// * `zener-bias`: IZlo ≤ (VUmin − V0hi(0))/RZhi, so RZhi ≤ (VUmin − V0hi(0))/iz_min;
-/// * `rz-power`: IZhi·RZlo ≥ VUmax − V0lo(0), so RZlo ≥ (VUmax − V0lo(0))²/allowed;
-/// * `zener-power`, `zener-junction`: Pe is the greatest V·(VUmax − V)/RZlo over a span that holds
-///   V0hi(0) unless that lies below Vm ≤ V0lo(0), which it never does.
+impl ZenerAtRail {
+    /// No RZ above this, Ω, keeps `zener-bias`: IZlo ≤ (VUmin − V0hi(0))/RZhi.
+    pub fn largest_rz_ohm(&self, rail: &Rail) -> f64 {
+        let v0 = self.test_voltage(0.0, rail);
+        (rail.feed.min_v - v0.hi_v) / self.zener.iz_min_a * (1.0 + ROUNDING_ROOM)
+    }
+
+    /// No RZ that measures below this, Ω, keeps `zener-power` and `zener-junction`: Pe is the
+    /// greatest V·(VUmax − V)/RZlo over a span that holds V0hi(0).
+    pub fn smallest_rz_ohm(&self, rail: &Rail) -> f64 {
+        let v0_hi_v = self.test_voltage(0.0, rail).hi_v;
+        let allowed_w =
+            self.allowed_power_w.min(self.allowed_rise_c / self.theta_ja_c_per_w).max(0.0);
+        let volts2 = v0_hi_v * (rail.feed.max_v - v0_hi_v);
+        if volts2 > 0.0 { volts2 / allowed_w * (1.0 - ROUNDING_ROOM) } else { 0.0 }
+    }
+
+    /// The least nominal zener current with which `zener-bias` may hold, A, ≥ 0.
+    pub fn least_nominal_current_a(&self, rail: &Rail) -> f64 {
+        let largest = self.largest_rz_ohm(rail);
+        let z = &self.zener;
+        if largest <= 0.0 {
+            return 0.0;
+        }
+        z.current_full_impedance_a(rail.feed.nominal_v, z.vz_v, largest).max(0.0)
+    }
+}
+
+/// The places [from, to) of `line.values` outside which some check surely fails: see
+/// [`ZenerAtRail::largest_rz_ohm`] and [`ZenerAtRail::smallest_rz_ohm`], and `rz-power`, since
+/// IZhi·RZlo ≥ VUmax − V0lo(0).
 fn possible(zener: &ZenerAtRail, line: &LineAtRail, rail: &Rail) -> (usize, usize) {
-    let v0 = zener.test_voltage(0.0, rail);
-    let highest = (rail.feed.min_v - v0.hi_v) / zener.zener.iz_min_a * (1.0 + ROUNDING_ROOM);
-    let on_rz_v = (rail.feed.max_v - v0.lo_v).max(0.0);
-    let in_zener_v2 = v0.hi_v * (rail.feed.max_v - v0.hi_v);
-    let zener_allowed_w =
-        zener.allowed_power_w.min(zener.allowed_rise_c / zener.theta_ja_c_per_w).max(0.0);
-    let lowest = (on_rz_v * on_rz_v / line.allowed_power_w).max(if in_zener_v2 > 0.0 {
-        in_zener_v2 / zener_allowed_w
-    } else {
-        0.0
-    }) * (1.0 - ROUNDING_ROOM);
+    let on_rz_v = (rail.feed.max_v - zener.test_voltage(0.0, rail).lo_v).max(0.0);
+    let by_power = on_rz_v * on_rz_v / line.allowed_power_w * (1.0 - ROUNDING_ROOM);
+    let (smallest, largest) = (zener.smallest_rz_ohm(rail), zener.largest_rz_ohm(rail));
     // A quotient 0/0 gives NaN, which cuts nothing away.
-    let from = line.values.partition_point(|v| v.lo_ohm < lowest);
-    let to = line.values.partition_point(|v| v.hi_ohm <= highest);
+    let from = line.values.partition_point(|v| v.lo_ohm < smallest || v.lo_ohm < by_power);
+    let to = line.values.partition_point(|v| v.hi_ohm <= largest);
     (from, to)
 }

@@ -1,0 +1,395 @@
+//! The best-first search over triples of nodes.
+//!
+//! A triple (reference node, amplifier node, power node) stands for all candidates whose sides lie in
+//! its nodes. Its key is the least key that any of them could have: every part of a key is monotone in
+//! the shares of the three sides, and each node's share is at most that of any choice in it. The
+//! triple with the least key is taken from the heap and, unless all three are choices made, one of
+//! its nodes is replaced by the nodes that it falls into. A triple in which some check fails between
+//! best figures holds no feasible candidate and is dropped.
+//!
+//! So a complete triple comes off the heap only when no other can hold a candidate before it: the
+//! search is exact, whatever order nodes are taken apart in. That order only decides how long it
+//! takes.
+
+use crate::candidate::Candidate;
+use crate::grove::{Grove, Names, Node, Share};
+use crate::problem::Ground;
+use crate::ranking::{Spread, score};
+use crate::sides::amplifier::{AmplifierMark, AmplifierSide};
+use crate::sides::power::{Mount, PowerMark, PowerSide};
+use crate::sides::reference::{ReferenceFigures, ReferenceSide};
+use crate::sides::{meet_power, meet_reference};
+use circuit::merit;
+use circuit::slot::Slot;
+use quantity::digits::rounded;
+use std::cmp::Ordering;
+use std::collections::{BinaryHeap, HashMap};
+use std::fmt;
+
+/// Memory that a search may take for itself, bytes.
+const MEMORY_LIMIT: usize = 600 << 20;
+
+/// Why a search ended early.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum SearchError {
+    /// The parts tie or balance so evenly that the list of what could still be first outgrew memory.
+    TooLarge {
+        /// How many triples were waiting.
+        waiting: usize,
+    },
+}
+
+impl fmt::Display for SearchError {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        match self {
+            Self::TooLarge { waiting } => write!(
+                f,
+                "the search holds {waiting} sets of candidates of which each could still be first, \
+                 and would need more than {} MiB; pin a slot or tighten the sheet",
+                MEMORY_LIMIT >> 20
+            ),
+        }
+    }
+}
+
+impl std::error::Error for SearchError {}
+
+/// What decides the order of two candidates, at ten significant digits.
+#[derive(Clone, Copy, PartialEq)]
+pub(crate) struct Key {
+    first: f64,
+    pub cost: f64,
+    pub stress: f64,
+    pub loss: f64,
+    /// Places by name in the order of [`Slot::BY_NAME`].
+    names: Names,
+}
+
+impl Eq for Key {}
+
+impl Ord for Key {
+    fn cmp(&self, other: &Self) -> Ordering {
+        self.first
+            .total_cmp(&other.first)
+            .then_with(|| self.cost.total_cmp(&other.cost))
+            .then_with(|| self.stress.total_cmp(&other.stress))
+            .then_with(|| self.loss.total_cmp(&other.loss))
+            .then_with(|| self.names.cmp(&other.names))
+    }
+}
+
+impl PartialOrd for Key {
+    fn partial_cmp(&self, other: &Self) -> Option<Ordering> {
+        Some(self.cmp(other))
+    }
+}
+
+/// What a list is ordered by.
+#[derive(Clone, Copy, PartialEq)]
+pub(crate) enum Order {
+    /// By rank.
+    Score,
+    /// By cost, stress, loss: a candidate comes after all that beat it.
+    Front,
+}
+
+#[derive(Clone, Copy)]
+struct Triple {
+    key: Key,
+    reference: u32,
+    amplifier: u32,
+    power: u32,
+    /// Stress where the amplifier meets the reference side.
+    at_input: f64,
+    /// Stress where the amplifier drives the transistor.
+    at_output: f64,
+}
+
+/// The heap gives its greatest, so the order is turned round.
+impl Ord for Triple {
+    fn cmp(&self, other: &Self) -> Ordering {
+        other.key.cmp(&self.key).then_with(|| {
+            (other.reference, other.amplifier, other.power).cmp(&(
+                self.reference,
+                self.amplifier,
+                self.power,
+            ))
+        })
+    }
+}
+
+impl PartialOrd for Triple {
+    fn partial_cmp(&self, other: &Self) -> Option<Ordering> {
+        Some(self.cmp(other))
+    }
+}
+
+impl PartialEq for Triple {
+    fn eq(&self, other: &Self) -> bool {
+        self.cmp(other) == Ordering::Equal
+    }
+}
+
+impl Eq for Triple {}
+
+/// Which node of a triple is taken apart.
+#[derive(Clone, Copy, PartialEq)]
+enum SideName {
+    Reference,
+    Amplifier,
+    Power,
+}
+
+/// Candidates one after another, in order.
+pub(crate) struct Search<'g, 'p> {
+    ground: &'g Ground<'p>,
+    order: Order,
+    references: Grove<ReferenceSide<'g, 'p>>,
+    amplifiers: Grove<AmplifierSide>,
+    powers: Grove<PowerSide<'g, 'p>>,
+    heap: BinaryHeap<Triple>,
+    limits: Spread,
+    /// Rows that a part (slot, place by name) has in the list so far.
+    rows: HashMap<(Slot, u32), u32>,
+    taken: u64,
+}
+
+impl<'g, 'p> Search<'g, 'p> {
+    /// Candidates in rank order.
+    pub fn by_score(ground: &'g Ground<'p>, limits: Spread) -> Self {
+        Self::new(ground, Order::Score, limits)
+    }
+
+    /// Candidates in an order in which each comes after all that beat it.
+    pub fn for_front(ground: &'g Ground<'p>) -> Self {
+        Self::new(ground, Order::Front, crate::ranking::NO_SPREAD)
+    }
+
+    fn new(ground: &'g Ground<'p>, order: Order, limits: Spread) -> Self {
+        let mut search = Self {
+            ground,
+            order,
+            references: Grove::new(ReferenceSide::new(ground)),
+            amplifiers: Grove::new(AmplifierSide::new(ground)),
+            powers: Grove::new(PowerSide::new(ground)),
+            heap: BinaryHeap::new(),
+            limits,
+            rows: HashMap::new(),
+            taken: 0,
+        };
+        let roots = (search.references.root(), search.amplifiers.root(), search.powers.root());
+        if let (Some(reference), Some(amplifier), Some(power)) = roots {
+            search.push(reference, amplifier, power, None, None);
+        }
+        search
+    }
+
+    /// The next candidate; None where there is no other.
+    pub fn next(&mut self) -> Result<Option<Candidate>, SearchError> {
+        self.next_unless(|_| false)
+    }
+
+    /// The next candidate whose key, and that of all sets it came from, is not `beaten`. A set may be
+    /// beaten only where every candidate in it is.
+    pub fn next_unless(
+        &mut self,
+        beaten: impl Fn(&Key) -> bool,
+    ) -> Result<Option<Candidate>, SearchError> {
+        while let Some(triple) = self.heap.pop() {
+            if beaten(&triple.key) || self.is_full(&triple) {
+                continue;
+            }
+            self.taken += 1;
+            if self.taken.is_multiple_of(4096) {
+                self.check_memory()?;
+            }
+            match self.side_to_split(&triple) {
+                None => {
+                    let candidate = self.candidate(&triple);
+                    self.count_rows(&triple);
+                    return Ok(candidate);
+                }
+                Some(side) => self.split(&triple, side),
+            }
+        }
+        Ok(None)
+    }
+
+    /// How many sets of candidates were looked at.
+    #[cfg(test)]
+    pub fn taken(&self) -> u64 {
+        self.taken
+    }
+
+    fn split(&mut self, triple: &Triple, side: SideName) {
+        let Triple { reference, amplifier, power, at_input, at_output, .. } = *triple;
+        match side {
+            SideName::Reference => {
+                for child in self.references.children(reference) {
+                    self.push(child, amplifier, power, None, Some(at_output));
+                }
+            }
+            SideName::Amplifier => {
+                for child in self.amplifiers.children(amplifier) {
+                    self.push(reference, child, power, None, None);
+                }
+            }
+            SideName::Power => {
+                for child in self.powers.children(power) {
+                    self.push(reference, amplifier, child, Some(at_input), None);
+                }
+            }
+        }
+    }
+
+    /// Puts a triple on the heap unless it holds no feasible candidate. What is known of the two
+    /// meetings is handed over.
+    fn push(
+        &mut self,
+        reference: u32,
+        amplifier: u32,
+        power: u32,
+        at_input: Option<f64>,
+        at_output: Option<f64>,
+    ) {
+        let r = self.references.get(reference);
+        let a = self.amplifiers.get(amplifier);
+        let p = self.powers.get(power);
+        let Some(at_output) = at_output.or_else(|| meet_power(self.ground, &a.figures, &p.figures))
+        else {
+            return;
+        };
+        let Some(at_input) =
+            at_input.or_else(|| meet_reference(self.ground, &r.figures, &a.figures))
+        else {
+            return;
+        };
+        let key = self.key(
+            &[r.share, a.share, p.share],
+            at_input.max(at_output),
+            &[&r.names, &a.names, &p.names],
+        );
+        self.heap.push(Triple { key, reference, amplifier, power, at_input, at_output });
+    }
+
+    fn key(&self, [r, a, p]: &[Share; 3], meeting: f64, names: &[&Names; 3]) -> Key {
+        let merits = self.merits([r, a, p], meeting);
+        let cost = rounded(merits.cost);
+        let by_name = Slot::BY_NAME.map(|slot| names.iter().map(|n| n[slot as usize]).sum());
+        Key {
+            first: match self.order {
+                Order::Score => rounded(merits.score),
+                Order::Front => cost,
+            },
+            cost,
+            stress: rounded(merits.stress),
+            loss: rounded(merits.loss),
+            names: by_name,
+        }
+    }
+
+    fn merits(&self, [r, a, p]: [&Share; 3], meeting: f64) -> Merits {
+        let cost = r.cost + a.cost + p.cost;
+        let loss = merit::loss(self.ground.rail(), r.current_a + a.current_a);
+        let stress = r.stress.max(a.stress).max(p.stress).max(meeting);
+        let score = score(&self.ground.problem.weights, cost, loss, stress);
+        Merits { cost, loss, stress, score }
+    }
+
+    /// The node to take apart: that with the most choices. None where all are made.
+    fn side_to_split(&self, triple: &Triple) -> Option<SideName> {
+        let sizes = [
+            (self.references.get(triple.reference).size, SideName::Reference),
+            (self.amplifiers.get(triple.amplifier).size, SideName::Amplifier),
+            (self.powers.get(triple.power).size, SideName::Power),
+        ];
+        sizes
+            .into_iter()
+            .filter(|(size, _)| *size > 1)
+            .max_by_key(|(size, _)| *size)
+            .map(|(_, side)| side)
+    }
+
+    fn check_memory(&self) -> Result<(), SearchError> {
+        let in_use = self.heap.capacity() * size_of::<Triple>()
+            + self.references.memory()
+            + self.amplifiers.memory()
+            + self.powers.memory();
+        if in_use > MEMORY_LIMIT {
+            return Err(SearchError::TooLarge { waiting: self.heap.len() });
+        }
+        Ok(())
+    }
+
+    /// The slots in which all candidates of a triple have the same part, with its place by name.
+    fn decided(&self, triple: &Triple) -> impl Iterator<Item = (Slot, u32)> {
+        fn of<F, M>(node: &Node<F, M>) -> impl Iterator<Item = (Slot, u32)> + use<F, M> {
+            let names = node.names;
+            node.decided.iter().map(move |slot| (slot, names[slot as usize]))
+        }
+        of(self.references.get(triple.reference))
+            .chain(of(self.amplifiers.get(triple.amplifier)))
+            .chain(of(self.powers.get(triple.power)))
+            .filter(|&(_, place)| place > 0)
+    }
+
+    /// Some part that all candidates of the triple share has as many rows as it may have.
+    fn is_full(&self, triple: &Triple) -> bool {
+        if self.limits == crate::ranking::NO_SPREAD {
+            return false;
+        }
+        self.decided(triple).any(|(slot, place)| {
+            let rows = self.rows.get(&(slot, place)).copied().unwrap_or(0);
+            self.limits[slot as usize].is_some_and(|limit| rows >= limit)
+        })
+    }
+
+    fn count_rows(&mut self, triple: &Triple) {
+        let decided: Vec<_> = self.decided(triple).collect();
+        for (slot, place) in decided {
+            if self.limits[slot as usize].is_some() {
+                *self.rows.entry((slot, place)).or_default() += 1;
+            }
+        }
+    }
+
+    /// The candidate that a complete triple stands for.
+    fn candidate(&self, triple: &Triple) -> Option<Candidate> {
+        let r = self.references.get(triple.reference);
+        let a = self.amplifiers.get(triple.amplifier);
+        let p = self.powers.get(triple.power);
+        let ReferenceFigures::Complete(complete) = &r.figures else { return None };
+        let AmplifierMark::One(amplifier) = a.mark else { return None };
+        let PowerMark::Done(pass, mount) = p.mark else { return None };
+        let mut places = [None; Slot::COUNT];
+        places[Slot::Zener as usize] = Some(complete.zener);
+        places[Slot::BiasLine as usize] = Some(complete.bias_line);
+        places[Slot::Amplifier as usize] = Some(amplifier);
+        places[Slot::DividerLine as usize] = Some(complete.divider_line);
+        places[Slot::Pot as usize] = complete.pot;
+        places[Slot::Pass as usize] = Some(pass);
+        places[Slot::Heatsink as usize] = match mount {
+            Mount::Sink(sink) => Some(sink),
+            Mount::Own | Mount::None => None,
+        };
+        let meeting = triple.at_input.max(triple.at_output);
+        let merits = self.merits([&r.share, &a.share, &p.share], meeting);
+        Some(Candidate {
+            places,
+            rz: complete.bias.rz,
+            divider: complete.divider,
+            cost: merits.cost,
+            loss: merits.loss,
+            stress: merits.stress,
+            score: merits.score,
+        })
+    }
+}
+
+/// The figures that rank a candidate, in full.
+struct Merits {
+    cost: f64,
+    loss: f64,
+    stress: f64,
+    score: f64,
+}
