@@ -15,6 +15,24 @@ pub(crate) struct Share {
 }
 
 impl Share {
+    /// The share of a node that falls into no part: no candidate has it.
+    const MORE_THAN_ANY: Share =
+        Share { cost: f64::INFINITY, current_a: f64::INFINITY, stress: f64::INFINITY };
+
+    /// Each figure the greater of the two.
+    fn raised_to(&self, other: &Share) -> Share {
+        Share {
+            cost: self.cost.max(other.cost),
+            current_a: self.current_a.max(other.current_a),
+            stress: self.stress.max(other.stress),
+        }
+    }
+
+    /// No choice at all.
+    pub fn is_impossible(&self) -> bool {
+        self.cost == f64::INFINITY
+    }
+
     /// Each figure the lesser of the two.
     pub fn least(&mut self, other: &Share) {
         self.cost = self.cost.min(other.cost);
@@ -87,23 +105,34 @@ pub(crate) trait Growth {
 }
 
 /// The nodes of a side that have come to be.
+///
+/// What a node can add is known better once its parts are known: it adds at least what the least of
+/// its parts adds. So whenever a node is taken apart, its share is raised to that, and so are the
+/// shares of the nodes above it.
 pub(crate) struct Grove<G: Growth> {
     pub growth: G,
     nodes: Vec<Node<G::Figures, G::Mark>>,
-    children: Vec<Option<(u32, u32)>>,
+    links: Vec<Links>,
     scratch: Vec<Node<G::Figures, G::Mark>>,
+}
+
+/// How a node hangs together with others.
+#[derive(Clone)]
+struct Links {
+    parent: Option<u32>,
+    children: Option<Range<u32>>,
 }
 
 impl<G: Growth> Grove<G> {
     pub fn new(growth: G) -> Self {
-        Self { growth, nodes: Vec::new(), children: Vec::new(), scratch: Vec::new() }
+        Self { growth, nodes: Vec::new(), links: Vec::new(), scratch: Vec::new() }
     }
 
     pub fn root(&mut self) -> Option<u32> {
         if self.nodes.is_empty() {
             let root = self.growth.root()?;
             self.nodes.push(root);
-            self.children.push(None);
+            self.links.push(Links { parent: None, children: None });
         }
         Some(0)
     }
@@ -114,24 +143,45 @@ impl<G: Growth> Grove<G> {
 
     /// The parts of a node, made on the first call.
     pub fn children(&mut self, id: u32) -> Range<u32> {
-        if let Some((from, to)) = self.children[id as usize] {
-            return from..to;
+        if let Some(range) = &self.links[id as usize].children {
+            return range.clone();
         }
         self.scratch.clear();
         let node = self.nodes[id as usize];
         self.growth.children(&node, &mut self.scratch);
         let from = self.nodes.len() as u32;
         self.nodes.append(&mut self.scratch);
-        self.children.resize(self.nodes.len(), None);
-        let to = self.nodes.len() as u32;
-        self.children[id as usize] = Some((from, to));
-        from..to
+        self.links.resize(self.nodes.len(), Links { parent: Some(id), children: None });
+        let range = from..self.nodes.len() as u32;
+        self.links[id as usize].children = Some(range.clone());
+        self.raise(id);
+        range
+    }
+
+    /// Raises the share of a node, and of those above it, to what their parts add at least.
+    fn raise(&mut self, id: u32) {
+        let mut next = Some(id);
+        while let Some(id) = next {
+            let Links { parent, children } = self.links[id as usize].clone();
+            let Some(children) = children else { return };
+            let mut least = Share::MORE_THAN_ANY;
+            for child in children {
+                least.least(&self.nodes[child as usize].share);
+            }
+            let share = &mut self.nodes[id as usize].share;
+            let raised = share.raised_to(&least);
+            if raised == *share {
+                return;
+            }
+            *share = raised;
+            next = parent;
+        }
     }
 
     /// Memory in use, bytes.
     pub fn memory(&self) -> usize {
         self.nodes.capacity() * size_of::<Node<G::Figures, G::Mark>>()
-            + self.children.capacity() * size_of::<Option<(u32, u32)>>()
+            + self.links.capacity() * size_of::<Links>()
             + self.growth.memory()
     }
 }

@@ -57,5 +57,8 @@ pub fn shortlist(
             None => break,
         }
     }
+    if std::env::var_os("RW_STAT").is_some() {
+        eprintln!("taken {}", search.taken());
+    }
     Ok(list)
 }

@@ -67,6 +67,11 @@ pub(crate) struct Key {
 
 impl Eq for Key {}
 
+impl Key {
+    const LEAST: Key =
+        Key { first: 0.0, cost: 0.0, stress: 0.0, loss: 0.0, names: [0; Slot::COUNT] };
+}
+
 impl Ord for Key {
     fn cmp(&self, other: &Self) -> Ordering {
         self.first
@@ -195,8 +200,15 @@ impl<'g, 'p> Search<'g, 'p> {
         &mut self,
         beaten: impl Fn(&Key) -> bool,
     ) -> Result<Option<Candidate>, SearchError> {
-        while let Some(triple) = self.heap.pop() {
+        while let Some(mut triple) = self.heap.pop() {
             if beaten(&triple.key) || self.is_full(&triple) {
+                continue;
+            }
+            // More may be known of its nodes than when it was put there.
+            let Some(key) = self.key(&triple) else { continue };
+            if key > triple.key {
+                triple.key = key;
+                self.heap.push(triple);
                 continue;
             }
             self.taken += 1;
@@ -216,7 +228,6 @@ impl<'g, 'p> Search<'g, 'p> {
     }
 
     /// How many sets of candidates were looked at.
-    #[cfg(test)]
     pub fn taken(&self) -> u64 {
         self.taken
     }
@@ -264,19 +275,27 @@ impl<'g, 'p> Search<'g, 'p> {
         else {
             return;
         };
-        let key = self.key(
-            &[r.share, a.share, p.share],
-            at_input.max(at_output),
-            &[&r.names, &a.names, &p.names],
-        );
-        self.heap.push(Triple { key, reference, amplifier, power, at_input, at_output });
+        let key = Key::LEAST;
+        let mut triple = Triple { key, reference, amplifier, power, at_input, at_output };
+        if let Some(key) = self.key(&triple) {
+            triple.key = key;
+            self.heap.push(triple);
+        }
     }
 
-    fn key(&self, [r, a, p]: &[Share; 3], meeting: f64, names: &[&Names; 3]) -> Key {
-        let merits = self.merits([r, a, p], meeting);
+    /// The least key that any candidate of a triple could have; None where a node of it is known to
+    /// hold no choice.
+    fn key(&self, triple: &Triple) -> Option<Key> {
+        let r = self.references.get(triple.reference);
+        let a = self.amplifiers.get(triple.amplifier);
+        let p = self.powers.get(triple.power);
+        let shares = [&r.share, &a.share, &p.share];
+        if shares.iter().any(|share| share.is_impossible()) {
+            return None;
+        }
+        let merits = self.merits(shares, triple.at_input.max(triple.at_output));
         let cost = rounded(merits.cost);
-        let by_name = Slot::BY_NAME.map(|slot| names.iter().map(|n| n[slot as usize]).sum());
-        Key {
+        Some(Key {
             first: match self.order {
                 Order::Score => rounded(merits.score),
                 Order::Front => cost,
@@ -284,8 +303,9 @@ impl<'g, 'p> Search<'g, 'p> {
             cost,
             stress: rounded(merits.stress),
             loss: rounded(merits.loss),
-            names: by_name,
-        }
+            names: Slot::BY_NAME
+                .map(|slot| [r.names, a.names, p.names].iter().map(|n| n[slot as usize]).sum()),
+        })
     }
 
     fn merits(&self, [r, a, p]: [&Share; 3], meeting: f64) -> Merits {
@@ -296,18 +316,19 @@ impl<'g, 'p> Search<'g, 'p> {
         Merits { cost, loss, stress, score }
     }
 
-    /// The node to take apart: that with the most choices. None where all are made.
+    /// The node to take apart; None where all are choices made.
+    ///
+    /// The power side weighs most in cost and stress, so a list of what is best is sorted by it first.
     fn side_to_split(&self, triple: &Triple) -> Option<SideName> {
-        let sizes = [
-            (self.references.get(triple.reference).size, SideName::Reference),
-            (self.amplifiers.get(triple.amplifier).size, SideName::Amplifier),
-            (self.powers.get(triple.power).size, SideName::Power),
-        ];
-        sizes
-            .into_iter()
-            .filter(|(size, _)| *size > 1)
-            .max_by_key(|(size, _)| *size)
-            .map(|(_, side)| side)
+        if self.powers.get(triple.power).size > 1 {
+            Some(SideName::Power)
+        } else if self.amplifiers.get(triple.amplifier).size > 1 {
+            Some(SideName::Amplifier)
+        } else if self.references.get(triple.reference).size > 1 {
+            Some(SideName::Reference)
+        } else {
+            None
+        }
     }
 
     fn check_memory(&self) -> Result<(), SearchError> {
