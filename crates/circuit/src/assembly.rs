@@ -3,12 +3,12 @@
 
 use crate::amplifier::{AmplifierAtRail, InputError};
 use crate::check::Tally;
-use crate::divider::adjustable::{self, AdjustableAim, AdjustableOutput};
+use crate::divider::adjustable::{self, AdjustableAim, AdjustableOutput, room_above, room_below};
 use crate::divider::fixed::{self, FixedAim, FixedOutput};
 use crate::divider::{self, Choice, Divider, DividerCurrent};
 use crate::drive;
 use crate::pass::{Duty, Mounted, PassFigures};
-use crate::rail::{Output, Rail};
+use crate::rail::{DividerRules, Output, Rail};
 use crate::reference::{Bias, ZenerAtRail};
 use crate::resistor::{LineAtRail, PotAtRail};
 use std::ops::ControlFlow::{self, Continue};
@@ -76,15 +76,75 @@ impl Aim {
         least > 0.0 && wide && vz_hi_v + error_v <= top * (1.0 + ROUNDING_ROOM)
     }
 
+    /// What a pot is asked beside a reference between `vz_lo_v` and `vz_hi_v`, whatever the amplifier
+    /// and the divider line; None with a fixed output.
+    ///
+    /// Vreach ≥ adjust_to and Vfloor ≤ adjust_from leave plo/RIhi ≥ adjust_to/VZlo − adjust_from/VZhi
+    /// for the track; Vtop ≤ ceiling and Vlow ≥ low_stop leave phi/RIlo ≤ ceiling/VZhi −
+    /// low_stop/VZlo. RI itself lies in the window for the divider current.
+    /// `error_v` is at most the amplifier's error, `line_spread` the least (hi/lo)² of the lines that
+    /// RI may come from.
+    pub fn pot_span(
+        &self,
+        (vz_lo_v, vz_hi_v): (f64, f64),
+        error_v: f64,
+        rules: &DividerRules,
+        line_spread: f64,
+    ) -> Option<PotSpan> {
+        let Aim::Adjustable(aim) = self else { return None };
+        let (least_v, most_v) = (vz_lo_v - error_v, vz_hi_v + error_v);
+        let least_ratio = room_below(aim.to_v / least_v, aim.from_v / most_v).max(0.0);
+        let most_ratio = aim.ceiling_v.map_or(f64::INFINITY, |ceiling| {
+            room_above(ceiling / most_v, aim.low_stop_v / least_v)
+        });
+        let least_ri_ohm = (vz_hi_v + rules.allow_error_v) / (rules.max_a - rules.allow_bias_a);
+        let most_ri_ohm = (vz_lo_v - rules.allow_error_v) / (rules.min_a + rules.allow_bias_a);
+        let ri_spread = line_spread.sqrt();
+        Some(PotSpan { vz_hi_v, least_ratio, most_ratio, least_ri_ohm, most_ri_ohm, ri_spread })
+    }
+
     /// A link may serve as RF or RX: the reference itself may lie in the band.
     pub fn may_follow(&self, vz_lo_v: f64, vz_hi_v: f64) -> bool {
-        match self {
-            Aim::Adjustable(_) => true,
-            Aim::Fixed(_) => {
-                let (bottom, top) = self.band_v();
-                vz_hi_v <= top * (1.0 + ROUNDING_ROOM) && vz_lo_v >= bottom * (1.0 - ROUNDING_ROOM)
-            }
-        }
+        let (bottom, top) = self.band_v();
+        vz_hi_v <= top * (1.0 + ROUNDING_ROOM) && vz_lo_v >= bottom * (1.0 - ROUNDING_ROOM)
+    }
+}
+
+/// What a pot is asked beside a reference, before RX and RI are chosen.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct PotSpan {
+    vz_hi_v: f64,
+    /// Least plo/RIhi.
+    least_ratio: f64,
+    /// Most phi/RIlo.
+    most_ratio: f64,
+    least_ri_ohm: f64,
+    most_ri_ohm: f64,
+    /// Least RIhi/RIlo.
+    ri_spread: f64,
+}
+
+impl PotSpan {
+    /// The pot may serve: false only where it never does.
+    pub fn may_serve(&self, pot: &PotAtRail) -> bool {
+        let room = 1.0 + ROUNDING_ROOM;
+        let track = &pot.track;
+        // IDhi ≥ VZhi/RIlo ≥ VZhi·least_ratio/plo, which heats the track.
+        let heating_a = self.vz_hi_v * self.least_ratio / track.lo_ohm;
+        // phi/most_ratio ≤ RIlo and RIhi ≤ plo/least_ratio.
+        let spans = track.hi_ohm * self.least_ratio * self.ri_spread
+            <= track.lo_ohm * self.most_ratio * room;
+        spans
+            && self.least_ratio * self.least_ri_ohm <= track.lo_ohm * room
+            && track.hi_ohm <= self.most_ratio * self.most_ri_ohm * room
+            && heating_a * heating_a * track.hi_ohm <= pot.allowed_power_w * room
+            && pot.allowed_voltage_v.is_none_or(|v| heating_a * track.hi_ohm <= v * room)
+    }
+
+    /// At most the nominal divider current with a track of at most `track_lo_ohm`, A: VZn/RI ≥
+    /// VZn/RIhi ≥ VZn·least_ratio/plo.
+    pub fn least_current_a(&self, vz_nominal_v: f64, track_lo_ohm: f64) -> f64 {
+        (vz_nominal_v * self.least_ratio / track_lo_ohm * (1.0 - ROUNDING_ROOM)).max(0.0)
     }
 }
 
@@ -122,6 +182,24 @@ pub fn choose_divider(
         (Aim::Fixed(aim), _) => fixed::choose(aim, bias, line, rail),
         (Aim::Adjustable(aim), Some(pot)) => adjustable::choose(aim, bias, line, pot, rail),
         (Aim::Adjustable(_), None) => Choice::OutsideWindow,
+    }
+}
+
+/// Some amplifier with at least the error `input` may hold beside a divider of this line and pot:
+/// false only where no pair of values does. Always true of a fixed output, whose choice is quick.
+pub fn may_hold(
+    aim: &Aim,
+    bias: &Bias,
+    line: &LineAtRail,
+    pot: Option<&PotAtRail>,
+    input: InputError,
+    rail: &Rail,
+) -> bool {
+    match (aim, pot) {
+        (Aim::Adjustable(aim), Some(pot)) => {
+            adjustable::some_pair_holds(aim, bias, line, pot, input, rail)
+        }
+        _ => true,
     }
 }
 

@@ -110,7 +110,10 @@ impl Zener {
         let depth = (self.izt_a / i_a).ln();
         let beyond = knee - 1.0;
         let at_test = self.zzt_ohm * self.izt_a;
-        if rounded(knee) == 1.0 {
+        if at_test == 0.0 {
+            // Also where the power below outgrows every figure.
+            0.0
+        } else if rounded(knee) == 1.0 {
             at_test * depth
         } else {
             // ((izt/i)^(m−1) − 1)/(m−1), without losing digits where m is close to 1.
@@ -362,14 +365,15 @@ impl ZenerAtRail {
         if volts2 > 0.0 { volts2 / allowed_w * (1.0 - ROUNDING_ROOM) } else { 0.0 }
     }
 
-    /// The least nominal zener current with which `zener-bias` may hold, A, ≥ 0.
+    /// At most the nominal zener current of any RZ with which all five checks may hold, A.
+    ///
+    /// Negative only where the nominal feed lies below the zener's voltage, and the checks may hold
+    /// all the same because heat takes the voltage down.
     pub fn least_nominal_current_a(&self, rail: &Rail) -> f64 {
-        let largest = self.largest_rz_ohm(rail);
         let z = &self.zener;
-        if largest <= 0.0 {
-            return 0.0;
-        }
-        z.current_full_impedance_a(rail.feed.nominal_v, z.vz_v, largest).max(0.0)
+        let at = |rz_ohm| z.current_full_impedance_a(rail.feed.nominal_v, z.vz_v, rz_ohm);
+        let largest = at(self.largest_rz_ohm(rail).max(0.0));
+        if largest >= 0.0 { largest } else { at(self.smallest_rz_ohm(rail)) }
     }
 }
 

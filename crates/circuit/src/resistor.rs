@@ -82,6 +82,15 @@ impl LineAtRail {
     }
 }
 
+impl LineAtRail {
+    /// (hi/lo)², the same for all values but for rounding: how far tolerance and temperature spread a
+    /// ratio of two of them. Infinite for a line without values.
+    pub fn spread(&self) -> f64 {
+        let ratios = self.values.iter().map(|v| v.hi_ohm / v.lo_ohm);
+        ratios.fold(f64::INFINITY, f64::min).powi(2)
+    }
+}
+
 /// A pot at the temperatures and under the derating of a rail.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct PotAtRail {

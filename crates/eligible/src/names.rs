@@ -1,6 +1,6 @@
 //! Parts that a sheet or a shop names: pins and bans.
 
-use catalog::{Catalog, Kind, Row, Shop};
+use catalog::{Catalog, Kind, Shop};
 use circuit::slot::Slot;
 use notice::{Notice, Place};
 use sheet::{NamedPart, Sheet};
@@ -77,13 +77,13 @@ pub fn kind_of(slot: Slot) -> Kind {
 }
 
 /// Every name that a catalog holds, also those of rows that can't be chosen.
-struct Index {
+struct Index<'a> {
     kind: Kind,
-    names: Vec<(String, String)>,
+    names: Vec<(&'a str, &'a str)>,
 }
 
-impl Index {
-    fn new(kind: Kind, shop: &Shop) -> Self {
+impl<'a> Index<'a> {
+    fn new(kind: Kind, shop: &'a Shop) -> Self {
         let names = match kind {
             Kind::Zeners => names_of(&shop.zeners),
             Kind::Opamps => names_of(&shop.opamps),
@@ -97,40 +97,47 @@ impl Index {
 
     /// A name is looked up as a part of every maker, else as `maker/part`.
     fn look_up(&self, text: &str) -> Vec<(String, String)> {
-        let as_part: Vec<_> = self.names.iter().filter(|(_, part)| part == text).cloned().collect();
+        let as_part = self.matching(|_, part| part == text);
         if !as_part.is_empty() {
             return as_part;
         }
         // A maker's or a part's name may hold a stroke of its own, so whole names are compared.
-        let is_full_name = |maker: &str, part: &str| {
+        self.matching(|maker, part| {
             text.strip_prefix(maker).and_then(|rest| rest.strip_prefix('/')) == Some(part)
-        };
-        self.names.iter().filter(|(maker, part)| is_full_name(maker, part)).cloned().collect()
+        })
+    }
+
+    fn matching(&self, matches: impl Fn(&str, &str) -> bool) -> Vec<(String, String)> {
+        self.names
+            .iter()
+            .filter(|(maker, part)| matches(maker, part))
+            .map(|&(maker, part)| (maker.to_owned(), part.to_owned()))
+            .collect()
     }
 
     /// The name most like the text.
     fn nearest(&self, text: &str) -> Option<(f64, String)> {
         self.names
             .iter()
-            .map(|(maker, part)| {
+            .map(|&(maker, part)| {
                 let full = format!("{maker}/{part}");
                 let likeness =
                     strsim::jaro_winkler(text, part).max(strsim::jaro_winkler(text, &full));
-                (likeness, if text.contains('/') { full } else { part.clone() })
+                (likeness, if text.contains('/') { full } else { part.to_owned() })
             })
             .max_by(|a, b| a.0.total_cmp(&b.0))
     }
 }
 
-fn names_of<T>(catalog: &Catalog<T>) -> Vec<(String, String)> {
-    let row = |row: &Row<T>| (row.maker.to_string(), row.part.to_string());
-    let unproven = catalog.unproven.iter().map(|u| (u.maker.to_string(), u.part.to_string()));
-    let left_out = catalog.left_out.iter().map(|l| (l.maker.to_string(), l.part.to_string()));
-    catalog.rows.iter().map(row).chain(unproven).chain(left_out).collect()
+fn names_of<T>(catalog: &Catalog<T>) -> Vec<(&str, &str)> {
+    let rows = catalog.rows.iter().map(|row| (row.maker.as_str(), row.part.as_str()));
+    let unproven = catalog.unproven.iter().map(|u| (u.maker.as_str(), u.part.as_str()));
+    let left_out = catalog.left_out.iter().map(|l| (l.maker.as_str(), l.part.as_str()));
+    rows.chain(unproven).chain(left_out).collect()
 }
 
 /// A pin that its slot's catalog does not hold.
-fn unknown_pin(pin: &NamedPart, slot: Slot, index: &Index) -> Notice {
+fn unknown_pin(pin: &NamedPart, slot: Slot, index: &Index<'_>) -> Notice {
     let notice = Notice::error(
         "pinned-part-unknown",
         pin.place.clone(),
@@ -146,7 +153,7 @@ fn unknown_pin(pin: &NamedPart, slot: Slot, index: &Index) -> Notice {
 }
 
 /// A ban that no catalog holds.
-fn unknown_ban(ban: &NamedPart, catalogs: &[Index]) -> Notice {
+fn unknown_ban(ban: &NamedPart, catalogs: &[Index<'_>]) -> Notice {
     let nearest =
         catalogs.iter().filter_map(|c| c.nearest(&ban.text)).max_by(|a, b| a.0.total_cmp(&b.0));
     let notice = Notice::warning(

@@ -113,7 +113,7 @@ fn quick(x: f64) -> Option<f64> {
         Ordering::Greater => true,
         Ordering::Less => false,
         // A sum of two figures is zero only where it is exactly so.
-        Ordering::Equal => whole % 2.0 == 1.0,
+        Ordering::Equal => whole as u64 % 2 == 1,
     };
     let units = if up { whole + 1.0 } else { whole };
     // Whole number below 2^53 over an exact power: the nearest binary figure, as parsing gives it.

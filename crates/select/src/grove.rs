@@ -19,6 +19,15 @@ impl Share {
     const MORE_THAN_ANY: Share =
         Share { cost: f64::INFINITY, current_a: f64::INFINITY, stress: f64::INFINITY };
 
+    /// What two sides add together.
+    pub fn beside(&self, other: &Share) -> Share {
+        Share {
+            cost: self.cost + other.cost,
+            current_a: self.current_a + other.current_a,
+            stress: self.stress.max(other.stress),
+        }
+    }
+
     /// Each figure the greater of the two.
     fn raised_to(&self, other: &Share) -> Share {
         Share {
@@ -60,8 +69,12 @@ impl Slots {
         Self(self.0 | 1 << slot as u8)
     }
 
+    pub fn has(self, slot: Slot) -> bool {
+        self.0 & 1 << slot as u8 != 0
+    }
+
     pub fn iter(self) -> impl Iterator<Item = Slot> {
-        Slot::ALL.into_iter().filter(move |s| self.0 & 1 << *s as u8 != 0)
+        Slot::ALL.into_iter().filter(move |slot| self.has(*slot))
     }
 }
 
@@ -141,14 +154,20 @@ impl<G: Growth> Grove<G> {
         &self.nodes[id as usize]
     }
 
-    /// The parts of a node, made on the first call.
-    pub fn children(&mut self, id: u32) -> Range<u32> {
+    /// The parts of a node. They are made on the first call, and those for which `stands` is false
+    /// are left out: no feasible candidate has them.
+    pub fn children(
+        &mut self,
+        id: u32,
+        mut stands: impl FnMut(&Node<G::Figures, G::Mark>) -> bool,
+    ) -> Range<u32> {
         if let Some(range) = &self.links[id as usize].children {
             return range.clone();
         }
         self.scratch.clear();
         let node = self.nodes[id as usize];
         self.growth.children(&node, &mut self.scratch);
+        self.scratch.retain(|child| stands(child));
         let from = self.nodes.len() as u32;
         self.nodes.append(&mut self.scratch);
         self.links.resize(self.nodes.len(), Links { parent: Some(id), children: None });
@@ -156,6 +175,22 @@ impl<G: Growth> Grove<G> {
         self.links[id as usize].children = Some(range.clone());
         self.raise(id);
         range
+    }
+
+    /// How many nodes have come to be.
+    pub fn count(&self) -> usize {
+        self.nodes.len()
+    }
+
+    /// The shares of the nodes that are choices made or not yet taken apart: every choice lies in one
+    /// of them.
+    pub fn frontier(&self) -> impl Iterator<Item = Share> {
+        let is_open = |links: &Links| links.children.is_none();
+        self.nodes
+            .iter()
+            .zip(&self.links)
+            .filter(move |(node, links)| is_open(links) && !node.share.is_impossible())
+            .map(|(node, _)| node.share)
     }
 
     /// Raises the share of a node, and of those above it, to what their parts add at least.

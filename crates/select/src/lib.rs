@@ -24,5 +24,8 @@ pub mod front;
 mod grove;
 pub mod problem;
 pub mod ranking;
+mod rest;
 mod search;
 mod sides;
+
+pub use search::SearchError;

@@ -151,8 +151,7 @@ impl<'a> Ground<'a> {
             bias_lines: lines(&problem.bias_lines),
             least_line_spread: divider_lines
                 .iter()
-                .filter_map(|line| line.values.first())
-                .map(|v| (v.hi_ohm / v.lo_ohm).powi(2))
+                .map(LineAtRail::spread)
                 .fold(f64::INFINITY, f64::min),
             divider_lines,
             pots: problem.pots.iter().map(|p| PotAtRail::new(p.figures, rail)).collect(),

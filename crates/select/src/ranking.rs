@@ -2,8 +2,10 @@
 
 use crate::candidate::Candidate;
 use crate::problem::{Ground, Problem, Weights};
-use crate::search::{Search, SearchError};
+use crate::search::Search;
+pub use crate::search::SearchError;
 use circuit::slot::Slot;
+use std::collections::HashMap;
 
 /// The most rows in which a list may show the same part of a slot.
 pub type Spread = [Option<u32>; Slot::COUNT];
@@ -57,8 +59,26 @@ pub fn shortlist(
             None => break,
         }
     }
-    if std::env::var_os("RW_STAT").is_some() {
-        eprintln!("taken {}", search.taken());
-    }
     Ok(list)
+}
+
+/// Walks down a list and passes over candidates whose part in a limited slot already has as many rows
+/// as its limit; rows without a part there are not limited.
+pub fn spread_out(list: &[Candidate], spread: &Spread) -> Vec<Candidate> {
+    let mut rows: HashMap<(usize, u32), u32> = HashMap::new();
+    let mut kept = Vec::new();
+    for candidate in list {
+        let limited = || {
+            let slots = candidate.places.iter().zip(spread).enumerate();
+            slots.filter_map(|(slot, (place, limit))| Some(((slot, (*place)?), (*limit)?)))
+        };
+        if limited().any(|(part, limit)| rows.get(&part).copied().unwrap_or(0) >= limit) {
+            continue;
+        }
+        for (part, _) in limited() {
+            *rows.entry(part).or_default() += 1;
+        }
+        kept.push(*candidate);
+    }
+    kept
 }

@@ -15,10 +15,12 @@ use crate::candidate::Candidate;
 use crate::grove::{Grove, Names, Node, Share};
 use crate::problem::Ground;
 use crate::ranking::{Spread, score};
+use crate::rest::Rest;
 use crate::sides::amplifier::{AmplifierMark, AmplifierSide};
-use crate::sides::power::{Mount, PowerMark, PowerSide};
-use crate::sides::reference::{ReferenceFigures, ReferenceSide};
+use crate::sides::power::{Mount, PowerMark, PowerNode, PowerSide};
+use crate::sides::reference::{ReferenceFigures, ReferenceNode, ReferenceSide};
 use crate::sides::{meet_power, meet_reference};
+use circuit::amplifier::AmplifierAtRail;
 use circuit::merit;
 use circuit::slot::Slot;
 use quantity::digits::rounded;
@@ -53,6 +55,60 @@ impl fmt::Display for SearchError {
 }
 
 impl std::error::Error for SearchError {}
+
+/// What sides that are not yet looked at add at least.
+struct RestOfSides {
+    references: Rest,
+    amplifiers: Rest,
+    /// References and amplifiers together.
+    both: Rest,
+    /// How many reference nodes there will be when it is worth while to look at them again.
+    next_look: usize,
+}
+
+impl RestOfSides {
+    /// So many reference nodes before the first look.
+    const FIRST_LOOK: usize = 512;
+
+    fn new(references: &ReferenceSide<'_, '_>, amplifiers: &AmplifierSide) -> Self {
+        let references = Rest::of(references.shares());
+        let amplifiers = Rest::of(amplifiers.shares());
+        let both = references.with(&amplifiers);
+        Self { references, amplifiers, both, next_look: Self::FIRST_LOOK }
+    }
+
+    /// Takes in what has become known of the references, whenever their nodes have grown by half.
+    fn learn(&mut self, references: &Grove<ReferenceSide<'_, '_>>) {
+        if references.count() >= self.next_look {
+            self.next_look = references.count() * 3 / 2;
+            self.references = Rest::of(references.frontier());
+            self.both = self.references.with(&self.amplifiers);
+        }
+    }
+}
+
+/// The node with all choices of a side.
+const ROOT: u32 = 0;
+
+/// Some reference side suits an amplifier. Grows the tree of references where it looks.
+fn suits_any(
+    ground: &Ground<'_>,
+    references: &mut Grove<ReferenceSide<'_, '_>>,
+    amp: &AmplifierAtRail,
+) -> bool {
+    let mut open: Vec<u32> = references.root().into_iter().collect();
+    while let Some(id) = open.pop() {
+        let node = references.get(id);
+        if node.share.is_impossible() || meet_reference(ground, &node.figures, amp).is_none() {
+            continue;
+        }
+        if node.size == 1 {
+            return true;
+        }
+        open.extend(references.children(id, |_| true));
+    }
+    false
+}
 
 /// What decides the order of two candidates, at ten significant digits.
 #[derive(Clone, Copy, PartialEq)]
@@ -152,6 +208,7 @@ pub(crate) struct Search<'g, 'p> {
     references: Grove<ReferenceSide<'g, 'p>>,
     amplifiers: Grove<AmplifierSide>,
     powers: Grove<PowerSide<'g, 'p>>,
+    rest: RestOfSides,
     heap: BinaryHeap<Triple>,
     limits: Spread,
     /// Rows that a part (slot, place by name) has in the list so far.
@@ -171,12 +228,19 @@ impl<'g, 'p> Search<'g, 'p> {
     }
 
     fn new(ground: &'g Ground<'p>, order: Order, limits: Spread) -> Self {
+        let amplifiers = AmplifierSide::new(ground);
+        let (references, powers) = rayon::join(
+            || ReferenceSide::new(ground, &amplifiers),
+            || PowerSide::new(ground, &amplifiers),
+        );
+        let rest = RestOfSides::new(&references, &amplifiers);
         let mut search = Self {
             ground,
             order,
-            references: Grove::new(ReferenceSide::new(ground)),
-            amplifiers: Grove::new(AmplifierSide::new(ground)),
-            powers: Grove::new(PowerSide::new(ground)),
+            references: Grove::new(references),
+            amplifiers: Grove::new(amplifiers),
+            powers: Grove::new(powers),
+            rest,
             heap: BinaryHeap::new(),
             limits,
             rows: HashMap::new(),
@@ -227,26 +291,44 @@ impl<'g, 'p> Search<'g, 'p> {
         Ok(None)
     }
 
-    /// How many sets of candidates were looked at.
-    pub fn taken(&self) -> u64 {
-        self.taken
-    }
-
+    /// Replaces a node of a triple by its parts.
+    ///
+    /// When a node's parts are made, those are left out for which no amplifier is found at all; an
+    /// amplifier is left out that no reference suits. So what can't be in any candidate is found once,
+    /// not once for each company.
     fn split(&mut self, triple: &Triple, side: SideName) {
         let Triple { reference, amplifier, power, at_input, at_output, .. } = *triple;
+        let ground = self.ground;
         match side {
             SideName::Reference => {
-                for child in self.references.children(reference) {
+                let amplifiers = &mut self.amplifiers.growth;
+                let stands = |child: &ReferenceNode| {
+                    amplifiers.any(|amp| meet_reference(ground, &child.figures, amp).is_some())
+                };
+                let children = self.references.children(reference, stands);
+                self.rest.learn(&self.references);
+                for child in children {
                     self.push(child, amplifier, power, None, Some(at_output));
                 }
             }
             SideName::Amplifier => {
-                for child in self.amplifiers.children(amplifier) {
+                let references = &mut self.references;
+                let amplifiers = self.amplifiers.children(amplifier, |child| {
+                    child.size > 1 || suits_any(ground, references, &child.figures)
+                });
+                for child in amplifiers {
                     self.push(reference, child, power, None, None);
                 }
             }
             SideName::Power => {
-                for child in self.powers.children(power) {
+                let amplifiers = &mut self.amplifiers.growth;
+                let is_mounting = self.powers.get(power).decided.has(Slot::Pass);
+                let stands = |child: &PowerNode| {
+                    // A mounting is driven as the transistor is.
+                    is_mounting
+                        || amplifiers.any(|amp| meet_power(ground, amp, &child.figures).is_some())
+                };
+                for child in self.powers.children(power, stands) {
                     self.push(reference, amplifier, child, Some(at_input), None);
                 }
             }
@@ -293,7 +375,11 @@ impl<'g, 'p> Search<'g, 'p> {
         if shares.iter().any(|share| share.is_impossible()) {
             return None;
         }
-        let merits = self.merits(shares, triple.at_input.max(triple.at_output));
+        let meeting = triple.at_input.max(triple.at_output);
+        let mut merits = self.merits(shares, meeting);
+        if self.order == Order::Score {
+            merits.score = merits.score.max(self.least_score(triple, meeting));
+        }
         let cost = rounded(merits.cost);
         Some(Key {
             first: match self.order {
@@ -306,6 +392,25 @@ impl<'g, 'p> Search<'g, 'p> {
             names: Slot::BY_NAME
                 .map(|slot| [r.names, a.names, p.names].iter().map(|n| n[slot as usize]).sum()),
         })
+    }
+
+    /// The least score of a triple, of which whole sides may not have been looked at.
+    fn least_score(&self, triple: &Triple, meeting: f64) -> f64 {
+        let power = self.powers.get(triple.power).share;
+        let (known, rest) = match (triple.reference, triple.amplifier) {
+            (ROOT, ROOT) => (power, &self.rest.both),
+            (ROOT, amplifier) => {
+                (self.amplifiers.get(amplifier).share.beside(&power), &self.rest.references)
+            }
+            _ => return 0.0,
+        };
+        let scores = rest.shares().iter().map(|share| {
+            let together = share.beside(&known);
+            let loss = merit::loss(self.ground.rail(), together.current_a);
+            score(&self.ground.problem.weights, together.cost, loss, together.stress.max(meeting))
+        });
+        // The sums are made in another order than those of a candidate: the last bits may differ.
+        scores.fold(f64::INFINITY, f64::min) * (1.0 - 1e-14)
     }
 
     fn merits(&self, [r, a, p]: [&Share; 3], meeting: f64) -> Merits {

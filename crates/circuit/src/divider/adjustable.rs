@@ -175,6 +175,39 @@ pub fn choose(
     search.least_strain(ris).map_or(Choice::OutsideWindow, Choice::Strained)
 }
 
+/// Some pair inside the window holds all checks beside the error `input`. Where none does for an
+/// amplifier with less error than any other, none does for any amplifier, whatever is chosen.
+pub fn some_pair_holds(
+    aim: &AdjustableAim,
+    bias: &Bias,
+    line: &LineAtRail,
+    pot: &PotAtRail,
+    input: InputError,
+    rail: &Rail,
+) -> bool {
+    let search = PairSearch { aim, bias, line, pot, input };
+    // The cheaper condition first: most pots fail it.
+    let spanning = search.spanning(&line.values, 1.0);
+    if spanning.is_empty() {
+        return false;
+    }
+    let window = &line.values[window(bias, line, rail)];
+    search.least_overshoot(window).is_some()
+}
+
+/// a − b, at least as far below as comparison at ten digits of either leaves room for.
+pub(crate) fn room_below(a: f64, b: f64) -> f64 {
+    a - b - ROUNDING_ROOM * (a.abs() + b.abs())
+}
+
+/// a − b, at least as far above.
+pub(crate) fn room_above(a: f64, b: f64) -> f64 {
+    a - b + ROUNDING_ROOM * (a.abs() + b.abs())
+}
+
+/// Room left for rounding where a necessary condition turns something away.
+const ROUNDING_ROOM: f64 = 1e-8;
+
 struct PairSearch<'a> {
     aim: &'a AdjustableAim,
     bias: &'a Bias,
@@ -198,6 +231,7 @@ struct Sides {
 
 impl PairSearch<'_> {
     fn least_overshoot(&self, ris: &[Resistance]) -> Option<Divider> {
+        let ris = self.spanning(ris, 1.0);
         let mut best = None;
         let rxs = Uppers(&self.line.values);
         let mut hint = (0, 0);
@@ -218,10 +252,43 @@ impl PairSearch<'_> {
             if from >= to {
                 continue;
             }
-            self.walk_while_tied(ri, rxs, (from..to).rev(), &mut best);
-            self.walk_while_tied(ri, rxs, from..to, &mut best);
+            let figure = |i: usize| {
+                let divider = Divider { upper: rxs.get(i), ri: *ri };
+                overshoot(self.aim, &output(self.bias, &divider, self.pot, self.input))
+            };
+            if figure(to - 1) <= figure(from) {
+                self.walk_while_tied(ri, rxs, (from..to).rev(), &mut best);
+            } else {
+                self.walk_while_tied(ri, rxs, from..to, &mut best);
+            }
         }
         best.map(|c: Contender| c.divider)
+    }
+
+    /// The values of RI with which no check is strained beyond `strain`, by necessary conditions, for
+    /// a utilisation u ≤ strain of each check eases adjust_to and low_stop to a strain-th of
+    /// themselves and raises adjust_from and ceiling by it: reach-high and reach-low then leave
+    /// plo/RIhi ≥ adjust_to/(VZlo − ε) − adjust_from/(VZhi + ε); ceiling and low-stop leave
+    /// phi/RIlo ≤ ceiling/(VZhi + ε) − low_stop/(VZlo − ε).
+    fn spanning<'r>(&self, ris: &'r [Resistance], strain: f64) -> &'r [Resistance] {
+        let (least_v, most_v) =
+            (self.bias.vz_lo_v - self.input.error_v, self.bias.vz_hi_v + self.input.error_v);
+        let can_tell = least_v > 0.0 && strain.is_finite();
+        if !can_tell {
+            return ris;
+        }
+        let (ease, raise) = (1.0 / strain, strain);
+        let track = &self.pot.track;
+        let least_ratio =
+            room_below(self.aim.to_v * ease / least_v, self.aim.from_v * raise / most_v);
+        let to = ris.partition_point(|ri| ri.hi_ohm * least_ratio <= track.lo_ohm);
+        // The input current helps Vlow nowhere and lifts Vtop, so it can be left out here.
+        let from = self.aim.ceiling_v.map_or(0, |ceiling| {
+            let most_ratio =
+                room_above(ceiling * raise / most_v, self.aim.low_stop_v * ease / least_v);
+            ris.partition_point(|ri| ri.lo_ohm * most_ratio < track.hi_ohm)
+        });
+        ris.get(from..to).unwrap_or_default()
     }
 
     /// Tries pairs from one end of those that hold until the next is clearly no better.
@@ -258,34 +325,45 @@ impl PairSearch<'_> {
     }
 
     fn least_strain(&self, ris: &[Resistance]) -> Option<Divider> {
+        // A pair somewhere in the middle tells how much strain need be looked at.
         let mut best = None;
-        let rxs = Uppers(&self.line.values);
+        let middle = ris.len() / 2;
+        let likely = self.spanning(ris, 1.05);
+        let probe = likely.get(likely.len() / 2).or(ris.get(middle))?;
+        self.strain_beside(probe, 0, &mut best);
+        let bound = best.map_or(f64::INFINITY, |c: Contender| c.figure);
         let mut hint = 0;
-        for ri in ris {
-            if !self.low_side_rises(ri) {
-                for i in 0..rxs.len() {
-                    self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, &mut best);
-                }
-                continue;
-            }
-            // The greatest of what rises and what falls is least where they cross.
-            let cross = first_from(hint, rxs.len(), |i| {
-                let sides = self.sides(ri, rxs.get(i));
-                sides.rising >= sides.falling
-            });
-            hint = cross;
-            for i in cross..rxs.len() {
-                if !self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, &mut best) {
-                    break;
-                }
-            }
-            for i in (0..cross).rev() {
-                if !self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, &mut best) {
-                    break;
-                }
-            }
+        for ri in self.spanning(ris, bound.max(1.0)) {
+            hint = self.strain_beside(ri, hint, &mut best);
         }
         best.map(|c: Contender| c.divider)
+    }
+
+    /// Tries the values of RX beside one RI; tells where what rises crosses what falls.
+    fn strain_beside(&self, ri: &Resistance, hint: usize, best: &mut Option<Contender>) -> usize {
+        let rxs = Uppers(&self.line.values);
+        if !self.low_side_rises(ri) {
+            for i in 0..rxs.len() {
+                self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, best);
+            }
+            return hint;
+        }
+        // The greatest of what rises and what falls is least where they cross.
+        let cross = first_from(hint, rxs.len(), |i| {
+            let sides = self.sides(ri, rxs.get(i));
+            sides.rising >= sides.falling
+        });
+        for i in cross..rxs.len() {
+            if !self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, best) {
+                break;
+            }
+        }
+        for i in (0..cross).rev() {
+            if !self.try_strained(Divider { upper: rxs.get(i), ri: *ri }, best) {
+                break;
+            }
+        }
+        cross
     }
 
     /// Takes a pair if it is strained less; false where pairs further out can't be.

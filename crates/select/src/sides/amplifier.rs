@@ -149,6 +149,36 @@ impl AmplifierSide {
         Self { boxes: Boxes::new(items) }
     }
 
+    /// The best figures of all amplifiers; None where there is none.
+    pub fn best(&self) -> Option<&AmplifierAtRail> {
+        self.boxes.root().map(|root| &self.boxes.get(root).best.figures)
+    }
+
+    /// The shares of all amplifiers.
+    pub fn shares(&self) -> impl Iterator<Item = Share> {
+        self.boxes.items().iter().map(|item| item.share)
+    }
+
+    /// Some amplifier `meets`, which must be true of the best figures of a box wherever it is true of
+    /// an amplifier in it.
+    pub fn any(&mut self, meets: impl Fn(&AmplifierAtRail) -> bool) -> bool {
+        let mut open: Vec<u32> = self.boxes.root().into_iter().collect();
+        while let Some(id) = open.pop() {
+            if !meets(&self.boxes.get(id).best.figures) {
+                continue;
+            }
+            match self.boxes.split(id) {
+                Pieces::Halves(a, b) => open.extend([a, b]),
+                Pieces::Items(range) => {
+                    if self.boxes.items()[range].iter().any(|item| meets(&item.at_rail)) {
+                        return true;
+                    }
+                }
+            }
+        }
+        false
+    }
+
     fn node(
         best: &BestAmplifier,
         size: u32,

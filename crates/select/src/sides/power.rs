@@ -3,6 +3,8 @@
 use crate::boxes::{Boxes, Item, Pieces};
 use crate::grove::{Growth, Names, Node, Share, Slots, least_names};
 use crate::problem::Ground;
+use crate::sides::amplifier::AmplifierSide;
+use crate::sides::meet_power;
 use circuit::check::WhileHolding;
 use circuit::pass::{CaseTemperatures, Mounted, PassFigures, Unmounted};
 use circuit::slot::Slot;
@@ -164,7 +166,9 @@ pub(crate) struct PowerSide<'g, 'p> {
 }
 
 impl<'g, 'p> PowerSide<'g, 'p> {
-    pub fn new(ground: &'g Ground<'p>) -> Self {
+    /// Transistors that hold on some mounting and that the best figures of all amplifiers drive.
+    pub fn new(ground: &'g Ground<'p>, amplifiers: &AmplifierSide) -> Self {
+        let best_amplifier = amplifiers.best();
         let rail = ground.rail();
         let duty = &ground.duty;
         let sinks: Vec<Boxes<SinkItem>> = ground
@@ -192,6 +196,7 @@ impl<'g, 'p> PowerSide<'g, 'p> {
             .enumerate()
             .filter_map(|(index, t)| {
                 let figures = PassFigures::new(t.part.figures, duty, rail);
+                meet_power(ground, best_amplifier?, &figures)?;
                 let verdict = |mounted: &Mounted| {
                     WhileHolding::over(|tally| figures.checks(mounted, duty, rail, tally)).ok()
                 };

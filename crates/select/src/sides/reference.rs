@@ -3,12 +3,15 @@
 use crate::boxes::{Boxes, Item, Pieces};
 use crate::grove::{Growth, Names, Node, Share, Slots};
 use crate::problem::Ground;
+use crate::sides::amplifier::AmplifierSide;
 use circuit::amplifier::AmplifierAtRail;
-use circuit::assembly::choose_divider;
+use circuit::assembly::{PotSpan, choose_divider, may_hold};
 use circuit::divider::{Divider, nominal_current_a};
+use circuit::parts::Zener;
 use circuit::reference::{Bias, ZenerAtRail, choose_rz};
 use circuit::slot::Slot;
 use rayon::prelude::*;
+use std::sync::Arc;
 
 /// What is known of references before their values are chosen: each figure at least as good as
 /// that of any of them.
@@ -100,37 +103,13 @@ impl Item for ZenerItem {
     }
 }
 
-/// A pot as a box sees it: it is chosen by price first, and only some values may serve.
-struct PotItem {
+/// Pots that may serve beside a biased zener, the cheapest first.
+struct PotRow {
     index: u32,
-    price: f64,
-    rank: u32,
-    value_ohm: f64,
-}
-
-#[derive(Clone, Copy)]
-struct BestPot {
-    price: f64,
-    rank: u32,
-}
-
-impl Item for PotItem {
-    type Best = BestPot;
-
-    fn best(&self) -> BestPot {
-        BestPot { price: self.price, rank: self.rank }
-    }
-
-    fn widen(best: &mut BestPot, other: &BestPot) {
-        best.price = best.price.min(other.price);
-        best.rank = best.rank.min(other.rank);
-    }
-
-    const AXES: usize = 2;
-
-    fn axis(&self, axis: usize) -> f64 {
-        if axis == 0 { self.price.max(1e-3).ln() } else { self.value_ohm.ln() * 0.1 }
-    }
+    /// The least place by name from here on.
+    least_rank: u32,
+    /// The longest track from here on, at its low end, Ω.
+    longest_ohm: f64,
 }
 
 /// A zener with the RZ of a line.
@@ -139,6 +118,8 @@ struct Biased {
     line: u32,
     bias: Bias,
     share_without_divider: Share,
+    /// Pots that may serve beside it; made when they are first asked for.
+    pots: Option<Arc<[PotRow]>>,
 }
 
 /// What a reference node stands for.
@@ -150,7 +131,7 @@ pub(crate) enum ReferenceMark {
     Zener(u32),
     /// A zener with its RZ (place among the biased).
     Biased(u32),
-    /// The same with a divider line and any of a box of pots.
+    /// The same with a divider line, and of the pots that may serve those from a place on.
     Pots(u32, u32, u32),
     /// All values chosen.
     Done,
@@ -162,9 +143,12 @@ pub(crate) type ReferenceNode = Node<ReferenceFigures, ReferenceMark>;
 pub(crate) struct ReferenceSide<'g, 'p> {
     ground: &'g Ground<'p>,
     boxes: Boxes<ZenerItem>,
-    pots: Boxes<PotItem>,
+    /// Pots that may serve at all, the cheapest first.
+    pots: Vec<u32>,
     biased: Vec<Biased>,
     least: LeastPrices,
+    /// The best figures of all amplifiers.
+    best_amplifier: Option<AmplifierAtRail>,
 }
 
 /// The least that lines and pots add.
@@ -179,20 +163,49 @@ struct LeastPrices {
 }
 
 impl LeastPrices {
-    fn new(ground: &Ground<'_>) -> Self {
+    fn new(ground: &Ground<'_>, pots: &[u32]) -> Self {
         let least = |prices: &mut dyn Iterator<Item = f64>| prices.fold(f64::INFINITY, f64::min);
         let problem = ground.problem;
-        let adjustable = ground.rail().is_adjustable();
         let first = |any: bool| u32::from(any);
         Self {
             bias_line: least(&mut problem.bias_lines.iter().map(|p| p.price)),
             divider_line: least(&mut problem.divider_lines.iter().map(|p| p.price)),
-            pot: if adjustable { least(&mut problem.pots.iter().map(|p| p.price)) } else { 0.0 },
+            pot: pots.first().map_or(0.0, |&p| problem.pots[p as usize].price),
             bias_line_rank: first(!problem.bias_lines.is_empty()),
             divider_line_rank: first(!problem.divider_lines.is_empty()),
-            pot_rank: first(adjustable && !problem.pots.is_empty()),
+            pot_rank: u32::from(!pots.is_empty()),
         }
     }
+}
+
+/// The least nominal divider current of a zener whose voltage is at most `vz_lo_v` at the low corner.
+///
+/// RI lies in the window with the allowances, so RI ≤ RIhi ≤ (VZlo − εd)/(divider.min_a + ibd); and
+/// VZn ≥ vz − zzt·izt.
+fn least_divider_current_a(ground: &Ground<'_>, zener: &Zener, vz_lo_v: f64) -> f64 {
+    least_current_a(ground, zener.vz_v - zener.zzt_ohm * zener.izt_a, vz_lo_v)
+}
+
+fn least_current_a(ground: &Ground<'_>, vz_nominal_v: f64, vz_lo_v: f64) -> f64 {
+    let rules = &ground.rail().divider;
+    let across_v = vz_lo_v - rules.allow_error_v;
+    if across_v <= 0.0 {
+        return 0.0;
+    }
+    let least = vz_nominal_v / across_v * (rules.min_a + rules.allow_bias_a);
+    // Room for the ten digits at which the window is compared.
+    (least * (1.0 - 1e-8)).max(0.0)
+}
+
+/// What a pot is asked beside a reference and the best amplifier; None with a fixed output.
+fn pot_span(
+    ground: &Ground<'_>,
+    volts: (f64, f64),
+    best_amplifier: &AmplifierAtRail,
+    line_spread: f64,
+) -> Option<PotSpan> {
+    let error_v = best_amplifier.input_error(volts.1).error_v;
+    ground.aim.pot_span(volts, error_v, &ground.rail().divider, line_spread)
 }
 
 /// Pieces of a divider line that a board takes: RI, and RF or RX where it is no link.
@@ -201,12 +214,20 @@ fn pieces(divider: &Divider) -> f64 {
 }
 
 impl<'g, 'p> ReferenceSide<'g, 'p> {
-    pub fn new(ground: &'g Ground<'p>) -> Self {
+    /// References that may suit the best figures of all amplifiers.
+    pub fn new(ground: &'g Ground<'p>, amplifiers: &AmplifierSide) -> Self {
+        let best_amplifier = amplifiers.best();
         let rail = ground.rail();
-        let least = LeastPrices::new(ground);
+        let mut pots: Vec<u32> =
+            if rail.is_adjustable() { (0..ground.pots.len() as u32).collect() } else { Vec::new() };
+        pots.sort_by(|a, b| {
+            let price = |p: &u32| ground.problem.pots[*p as usize].price;
+            price(a).total_cmp(&price(b)).then(a.cmp(b))
+        });
+        let least = LeastPrices::new(ground, &pots);
         let fillable = !ground.problem.bias_lines.is_empty()
             && !ground.problem.divider_lines.is_empty()
-            && (!rail.is_adjustable() || !ground.problem.pots.is_empty());
+            && (!rail.is_adjustable() || !pots.is_empty());
         let zeners = if fillable { ground.problem.zeners.as_slice() } else { &[] };
         let items = zeners
             .par_iter()
@@ -225,9 +246,7 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
                     spread: v0.hi_v / v0.lo_v,
                     single,
                 };
-                let wide = v0.lo_v <= 0.0
-                    || !ground.aim.may_suit(v0.lo_v, v0.hi_v, 0.0, ground.least_line_spread);
-                if wide {
+                if v0.lo_v <= 0.0 || !outlook.may_suit(best_amplifier?, ground) {
                     return None;
                 }
                 let pieces = if ground.aim.may_follow(v0.lo_v, v0.hi_v) { 1.0 } else { 2.0 };
@@ -238,27 +257,21 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
                     outlook,
                     share: Share {
                         cost,
-                        current_a: at_rail.least_nominal_current_a(rail),
+                        current_a: at_rail.least_nominal_current_a(rail)
+                            + least_divider_current_a(ground, at_rail.zener(), v0.lo_v),
                         stress: 0.0,
                     },
                     rank: ground.ranks.of(Slot::Zener, index),
                 })
             })
             .collect();
-        let pots = if rail.is_adjustable() { ground.problem.pots.as_slice() } else { &[] };
-        let pots = pots.iter().enumerate().map(|(index, part)| PotItem {
-            index: index as u32,
-            price: part.price,
-            rank: ground.ranks.of(Slot::Pot, index),
-            value_ohm: part.figures.value_ohm,
-        });
-        Self {
-            ground,
-            boxes: Boxes::new(items),
-            pots: Boxes::new(pots.collect()),
-            biased: Vec::new(),
-            least,
-        }
+        let best_amplifier = best_amplifier.copied();
+        Self { ground, boxes: Boxes::new(items), pots, biased: Vec::new(), least, best_amplifier }
+    }
+
+    /// At most the shares of all reference sides, zener by zener.
+    pub fn shares(&self) -> impl Iterator<Item = Share> {
+        self.boxes.items().iter().map(|item| item.share)
     }
 
     fn names(&self, zener: u32) -> Names {
@@ -320,7 +333,9 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
             children.push(Node {
                 share: Share {
                     cost: cost + pieces * self.least.divider_line + self.least.pot,
-                    ..without
+                    current_a: without.current_a
+                        + least_current_a(ground, bias.vz_nominal_v, bias.vz_lo_v),
+                    stress,
                 },
                 figures: ReferenceFigures::Outlook(outlook),
                 names,
@@ -333,6 +348,7 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
                 line: line as u32,
                 bias,
                 share_without_divider: without,
+                pots: None,
             });
         }
     }
@@ -344,52 +360,98 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
         biased: u32,
         children: &mut Vec<ReferenceNode>,
     ) {
-        for line in 0..self.ground.divider_lines.len() as u32 {
-            if self.ground.rail().is_adjustable() {
-                if let Some(root) = self.pots.root() {
-                    children.push(self.pots_node(node, biased, line, root));
-                }
-            } else {
-                children.extend(self.complete(node, biased, line, None));
-            }
+        let lines = 0..self.ground.divider_lines.len() as u32;
+        if self.ground.rail().is_adjustable() {
+            let pots = self.pots_of(biased);
+            children
+                .extend(lines.filter_map(|line| self.pots_node(node, &pots, (biased, line, 0))));
+        } else {
+            children.extend(lines.filter_map(|line| self.complete(node, biased, line, None)));
         }
     }
 
-    fn pots_node(&self, node: &ReferenceNode, biased: u32, line: u32, id: u32) -> ReferenceNode {
-        let part_box = self.pots.get(id);
-        let BestPot { price, rank } = part_box.best;
-        let line_price = self.ground.problem.divider_lines[line as usize].price;
-        let without = self.biased[biased as usize].share_without_divider;
+    /// The pots that may serve beside a biased zener.
+    fn pots_of(&mut self, biased: u32) -> Arc<[PotRow]> {
+        let ground = self.ground;
+        let Biased { bias, pots, .. } = &mut self.biased[biased as usize];
+        let volts = (bias.vz_lo_v, bias.vz_hi_v);
+        let best = self.best_amplifier.as_ref();
+        let span = best.and_then(|amp| pot_span(ground, volts, amp, ground.least_line_spread));
+        let all = &self.pots;
+        let rows = pots.get_or_insert_with(|| {
+            let mut rows: Vec<PotRow> = all
+                .iter()
+                .filter(|p| span.is_none_or(|s| s.may_serve(&ground.pots[**p as usize])))
+                .map(|&index| PotRow {
+                    index,
+                    least_rank: ground.ranks.of(Slot::Pot, index as usize),
+                    longest_ohm: ground.pots[index as usize].track.lo_ohm,
+                })
+                .collect();
+            for place in (1..rows.len()).rev() {
+                rows[place - 1].least_rank = rows[place - 1].least_rank.min(rows[place].least_rank);
+                rows[place - 1].longest_ohm =
+                    rows[place - 1].longest_ohm.max(rows[place].longest_ohm);
+            }
+            rows.into()
+        });
+        Arc::clone(rows)
+    }
+
+    /// The pots from the first one that may hold on; None behind the last.
+    fn pots_node(
+        &self,
+        node: &ReferenceNode,
+        pots: &[PotRow],
+        (biased, line, from): (u32, u32, u32),
+    ) -> Option<ReferenceNode> {
+        let ground = self.ground;
+        let Biased { bias, share_without_divider: without, .. } = &self.biased[biased as usize];
+        let best = self.best_amplifier.as_ref()?;
+        let at_rail = &ground.divider_lines[line as usize];
+        let volts = (bias.vz_lo_v, bias.vz_hi_v);
+        let span = pot_span(ground, volts, best, at_rail.spread())?;
+        let input = best.input_error(bias.vz_hi_v);
+        let holds = |row: &PotRow| {
+            let pot = &ground.pots[row.index as usize];
+            span.may_serve(pot)
+                && may_hold(&ground.aim, bias, at_rail, Some(pot), input, ground.rail())
+        };
+        let place = from + pots.get(from as usize..)?.iter().position(holds)? as u32;
+        let first = &pots[place as usize];
+        let price = ground.problem.pots[first.index as usize].price;
+        let line_price = ground.problem.divider_lines[line as usize].price;
+        let pieces = if ground.aim.may_follow(bias.vz_lo_v, bias.vz_hi_v) { 1.0 } else { 2.0 };
+        let by_window = least_current_a(ground, bias.vz_nominal_v, bias.vz_lo_v);
+        let by_track = span.least_current_a(bias.vz_nominal_v, first.longest_ohm);
         let mut names = node.names;
-        names[Slot::DividerLine as usize] = self.ground.ranks.of(Slot::DividerLine, line as usize);
-        names[Slot::Pot as usize] = rank;
-        Node {
-            // RX may be a link.
-            share: Share { cost: without.cost + line_price + price, ..without },
+        names[Slot::DividerLine as usize] = ground.ranks.of(Slot::DividerLine, line as usize);
+        names[Slot::Pot as usize] = first.least_rank;
+        Some(Node {
+            share: Share {
+                cost: without.cost + pieces * line_price + price,
+                current_a: without.current_a + by_window.max(by_track),
+                stress: without.stress,
+            },
             figures: node.figures,
             names,
             decided: node.decided.with(Slot::DividerLine),
-            size: part_box.len().max(2),
-            mark: ReferenceMark::Pots(biased, line, id),
-        }
+            size: (pots.len() as u32 - place).max(2),
+            mark: ReferenceMark::Pots(biased, line, place),
+        })
     }
 
-    fn pot_pieces(
+    /// The pot at a place, and those behind it.
+    fn next_pot(
         &mut self,
         node: &ReferenceNode,
-        (biased, line, id): (u32, u32, u32),
+        (biased, line, place): (u32, u32, u32),
         children: &mut Vec<ReferenceNode>,
     ) {
-        match self.pots.split(id) {
-            Pieces::Halves(a, b) => {
-                children.extend([a, b].map(|id| self.pots_node(node, biased, line, id)));
-            }
-            Pieces::Items(range) => {
-                for place in range {
-                    children.extend(self.complete(node, biased, line, Some(place)));
-                }
-            }
-        }
+        let pots = self.pots_of(biased);
+        let Some(row) = pots.get(place as usize) else { return };
+        children.extend(self.complete(node, biased, line, Some(row.index)));
+        children.extend(self.pots_node(node, &pots, (biased, line, place + 1)));
     }
 
     /// All values chosen; None where no value of the line lies in the divider's window.
@@ -398,27 +460,27 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
         node: &ReferenceNode,
         biased: u32,
         line: u32,
-        pot: Option<usize>,
+        pot: Option<u32>,
     ) -> Option<ReferenceNode> {
         let ground = self.ground;
-        let Biased { item, line: bias_line, bias, share_without_divider: without } =
+        let Biased { item, line: bias_line, bias, share_without_divider: without, .. } =
             &self.biased[biased as usize];
-        let pot = pot.map(|place| &self.pots.items()[place]);
         let choice = choose_divider(
             &ground.aim,
             bias,
             &ground.divider_lines[line as usize],
-            pot.map(|p| &ground.pots[p.index as usize]),
+            pot.map(|p| &ground.pots[p as usize]),
             ground.rail(),
         );
         let divider = choice.divider()?;
+        let pot_price = pot.map_or(0.0, |p| ground.problem.pots[p as usize].price);
         let line_price = ground.problem.divider_lines[line as usize].price;
         let mut names = node.names;
         names[Slot::DividerLine as usize] = ground.ranks.of(Slot::DividerLine, line as usize);
-        names[Slot::Pot as usize] = pot.map_or(0, |p| p.rank);
+        names[Slot::Pot as usize] = pot.map_or(0, |p| ground.ranks.of(Slot::Pot, p as usize));
         Some(Node {
             share: Share {
-                cost: without.cost + pieces(&divider) * line_price + pot.map_or(0.0, |p| p.price),
+                cost: without.cost + pieces(&divider) * line_price + pot_price,
                 current_a: without.current_a + nominal_current_a(bias, &divider),
                 stress: without.stress,
             },
@@ -428,7 +490,7 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
                 bias: *bias,
                 divider_line: line,
                 divider,
-                pot: pot.map(|p| p.index),
+                pot,
             }),
             names,
             decided: node.decided.with(Slot::DividerLine).with(Slot::Pot),
@@ -454,14 +516,14 @@ impl Growth for ReferenceSide<'_, '_> {
             },
             ReferenceMark::Zener(item) => self.bias_lines(item, children),
             ReferenceMark::Biased(biased) => self.divider_lines(node, biased, children),
-            ReferenceMark::Pots(biased, line, id) => {
-                self.pot_pieces(node, (biased, line, id), children);
+            ReferenceMark::Pots(biased, line, place) => {
+                self.next_pot(node, (biased, line, place), children);
             }
             ReferenceMark::Done => {}
         }
     }
 
     fn memory(&self) -> usize {
-        self.boxes.memory() + self.pots.memory() + self.biased.capacity() * size_of::<Biased>()
+        self.boxes.memory() + self.biased.capacity() * size_of::<Biased>()
     }
 }

@@ -1,0 +1,76 @@
+//! What the sides that are not yet looked at add at least, taken together.
+//!
+//! The least cost and the least stress of a side seldom belong to one part, so the corner of both is a
+//! weak bound. A few shares that no choice of the side undercuts all at once bound it better: each
+//! choice is at least as much as *one* of them in every figure.
+
+use crate::grove::Share;
+use std::collections::BTreeMap;
+
+/// More shares than this are joined into coarser ones.
+const MOST: usize = 48;
+
+/// Shares such that every choice adds at least one of them in each figure.
+#[derive(Debug, Clone)]
+pub(crate) struct Rest(Vec<Share>);
+
+impl Rest {
+    /// From the shares of all choices of a side.
+    pub fn of(shares: impl Iterator<Item = Share>) -> Self {
+        let mut shares: Vec<Share> = shares.collect();
+        shares.sort_unstable_by(|a, b| {
+            a.cost
+                .total_cmp(&b.cost)
+                .then_with(|| a.current_a.total_cmp(&b.current_a))
+                .then_with(|| a.stress.total_cmp(&b.stress))
+        });
+        let mut stairs: BTreeMap<u64, f64> = BTreeMap::new();
+        let mut least = Vec::new();
+        for share in shares {
+            let current = in_order(share.current_a);
+            let beaten =
+                stairs.range(..=current).next_back().is_some_and(|(_, s)| *s <= share.stress);
+            if beaten {
+                continue;
+            }
+            let covered: Vec<u64> = stairs
+                .range(current..)
+                .take_while(|(_, stress)| **stress >= share.stress)
+                .map(|(current, _)| *current)
+                .collect();
+            for step in covered {
+                stairs.remove(&step);
+            }
+            stairs.insert(current, share.stress);
+            least.push(share);
+        }
+        while least.len() > MOST {
+            least = least.chunks(2).map(joined).collect();
+        }
+        Self(least)
+    }
+
+    /// Of two sides together.
+    pub fn with(&self, other: &Rest) -> Self {
+        Self::of(self.0.iter().flat_map(|a| other.0.iter().map(move |b| a.beside(b))))
+    }
+
+    pub fn shares(&self) -> &[Share] {
+        &self.0
+    }
+}
+
+/// Whole numbers that order as the figures do, negative ones too.
+fn in_order(x: f64) -> u64 {
+    let bits = x.to_bits();
+    if x.is_sign_negative() { !bits } else { bits | 1 << 63 }
+}
+
+/// A share that is at most each of these in every figure.
+fn joined(shares: &[Share]) -> Share {
+    let mut least = shares[0];
+    for share in shares {
+        least.least(share);
+    }
+    least
+}
