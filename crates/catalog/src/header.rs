@@ -1,0 +1,234 @@
+//! The header row: which separator, which column is which, and what is odd about the names.
+
+use crate::cells::ABSENT;
+use crate::column::{Column, Need};
+use crate::kind::Kind;
+use crate::{locate, near};
+use csv::ByteRecord;
+use notice::{Notice, Place};
+use std::collections::{HashMap, HashSet};
+
+/// Beyond this many columns no further unknown one is compared with the known names.
+const MOST_COMPARED: usize = 1000;
+
+/// A header row, read.
+#[derive(Debug, Clone, Default)]
+pub(crate) struct Header {
+    /// The names, trimmed, renamed ones by their new name.
+    pub(crate) names: Vec<String>,
+    /// Between cells.
+    pub(crate) separator: u8,
+    /// For each declared column the field it is found in, or [`ABSENT`].
+    pub(crate) fields: Vec<u32>,
+    /// Where the rows begin.
+    pub(crate) end: usize,
+    /// Line breaks before the rows.
+    pub(crate) lines: u32,
+}
+
+/// Reads the header of a file. None where no row can be understood with it; notices say why.
+pub(crate) fn read(
+    kind: Kind,
+    bytes: &[u8],
+    renamed: &[(String, String)],
+    notices: &mut Vec<Notice>,
+) -> Option<Header> {
+    let file = kind.file_name();
+    if bytes.starts_with(b"\xff\xfe") || bytes.starts_with(b"\xfe\xff") {
+        let notice = Notice::error("file-encoding", Place::file(file), "the file is in UTF-16")
+            .expected("UTF-8")
+            .mend("save it as `CSV UTF-8`");
+        notices.push(notice);
+        return None;
+    }
+    let begin = locate::bom_length(bytes);
+    let text = bytes.get(begin..).unwrap_or_default();
+    let separator = separator_of(text);
+    let mut record = ByteRecord::new();
+    let mut reader = csv::ReaderBuilder::new()
+        .has_headers(false)
+        .flexible(true)
+        .delimiter(separator)
+        .from_reader(text);
+    if !reader.read_byte_record(&mut record).unwrap_or(false) {
+        let notice = Notice::error("file-empty", Place::file(file), "the file holds no header row")
+            .expected("the names of the columns in the first line");
+        notices.push(notice);
+        return None;
+    }
+    let end = begin + usize::try_from(reader.position().byte()).ok()?;
+    let head = bytes.get(..end).unwrap_or_default();
+    let start = begin + text.iter().take_while(|b| matches!(b, b'\n' | b'\r')).count();
+    let mut header = Header {
+        names: Vec::with_capacity(record.len()),
+        separator,
+        fields: vec![ABSENT; kind.columns().len()],
+        end,
+        lines: u32::try_from(memchr::memchr_iter(b'\n', head).count()).unwrap_or(u32::MAX),
+    };
+    let line =
+        1 + u32::try_from(bytes.iter().take(start).filter(|b| **b == b'\n').count()).unwrap_or(0);
+    let place = HeaderPlace { kind, bytes, start, separator, line };
+    header.name_columns(&record, renamed, &place, notices)?;
+    header.find_columns(kind);
+    header.doubt_names(&place, notices);
+    Some(header)
+}
+
+/// The separator that the header row holds most of, outside quotation marks; a comma where it holds
+/// none.
+fn separator_of(text: &[u8]) -> u8 {
+    let mut counts = [(b',', 0usize), (b';', 0), (b'\t', 0)];
+    let mut is_quoted = false;
+    let line = text.iter().skip_while(|b| matches!(b, b'\n' | b'\r'));
+    for byte in line.take_while(|b| **b != b'\n') {
+        is_quoted ^= *byte == b'"';
+        if let Some((_, count)) = counts.iter_mut().find(|(s, _)| s == byte && !is_quoted) {
+            *count += 1;
+        }
+    }
+    // The first of equal ones: a comma needs no majority.
+    counts.iter().rev().max_by_key(|(_, count)| *count).map_or(b',', |(separator, _)| *separator)
+}
+
+/// The header row, for notices about it.
+struct HeaderPlace<'f> {
+    kind: Kind,
+    bytes: &'f [u8],
+    start: usize,
+    separator: u8,
+    line: u32,
+}
+
+impl HeaderPlace<'_> {
+    /// A notice about the name in a field.
+    fn about(&self, field: usize, notice: fn(Place) -> Notice) -> Notice {
+        let spot = locate::spot(self.bytes, self.start, self.separator, Some(field), None);
+        let file = self.kind.file_name().to_owned();
+        notice(Place { file, line: self.line, column: spot.column })
+            .found(spot.found)
+            .excerpt(spot.excerpt)
+    }
+}
+
+impl Header {
+    /// Takes the names from the record. None where two columns bear the same.
+    fn name_columns(
+        &mut self,
+        record: &ByteRecord,
+        renamed: &[(String, String)],
+        place: &HeaderPlace<'_>,
+        notices: &mut Vec<Notice>,
+    ) -> Option<()> {
+        let mut seen: HashSet<String> = HashSet::with_capacity(record.len());
+        let new_names: HashMap<&str, &str> =
+            renamed.iter().map(|(file, page)| (file.trim(), page.trim())).collect();
+        let mut sound = true;
+        for (field, cell) in record.iter().enumerate() {
+            let Ok(text) = std::str::from_utf8(cell) else {
+                notices.push(
+                    place
+                        .about(field, |p| {
+                            Notice::error(
+                                "cell-not-utf8",
+                                p,
+                                "the name of a column is not valid UTF-8",
+                            )
+                        })
+                        .mend("save the file as UTF-8"),
+                );
+                sound = false;
+                self.names.push(String::from_utf8_lossy(cell).into_owned());
+                continue;
+            };
+            let text = text.trim();
+            let name = new_names.get(text).copied().unwrap_or(text).to_owned();
+            // Columns without a name, as a comma at the end of a line makes them, are no clash.
+            if !name.is_empty() && !seen.insert(name.clone()) {
+                let expected = format!("`{}` once", brief(&name));
+                notices.push(
+                    place
+                        .about(field, |p| {
+                            Notice::error(
+                                "column-duplicate",
+                                p,
+                                "another column has this name already",
+                            )
+                        })
+                        .expected(expected)
+                        .mend("rename or delete one of the two columns"),
+                );
+                sound = false;
+            }
+            self.names.push(name);
+        }
+        sound.then_some(())
+    }
+
+    /// Finds the declared columns among the names.
+    fn find_columns(&mut self, kind: Kind) {
+        let places: HashMap<&str, u32> =
+            self.names.iter().zip(0u32..).map(|(name, field)| (name.as_str(), field)).collect();
+        for (column, field) in kind.columns().iter().zip(self.fields.iter_mut()) {
+            *field = places.get(column.name).copied().unwrap_or(ABSENT);
+        }
+    }
+
+    /// Warns of names that are nearly those of columns, and of needed columns that are missing.
+    fn doubt_names(&self, place: &HeaderPlace<'_>, notices: &mut Vec<Notice>) {
+        let columns = place.kind.columns();
+        let is_present = |name: &str| {
+            columns.iter().zip(&self.fields).any(|(c, f)| c.name == name && *f != ABSENT)
+        };
+        let mut meant: Vec<&str> = Vec::new();
+        let unknown = self
+            .names
+            .iter()
+            .enumerate()
+            .filter(|(_, name)| !columns.iter().any(|c| c.name == name.as_str()));
+        for (field, name) in unknown.take(MOST_COMPARED) {
+            let Some(near) = near::nearest(name, columns.iter().map(|c| c.name)) else { continue };
+            // `iz_max_a` beside `iz_min_a` is a column of the shop's own.
+            if is_present(near) && near::slips(name, near) > 1 {
+                continue;
+            }
+            meant.push(near);
+            notices.push(
+                place
+                    .about(field, |p| {
+                        Notice::warning(
+                            "column-near-miss",
+                            p,
+                            "this is nearly the name of a column, and is not read",
+                        )
+                    })
+                    .expected(format!("`{near}`"))
+                    .mend(format!("write `{near}`, or map the name in `[columns]` of shop.toml")),
+            );
+        }
+        for (column, field) in columns.iter().zip(&self.fields) {
+            let is_needed = matches!(column.need, Need::Always | Need::ToProve);
+            if *field != ABSENT || !is_needed || meant.contains(&column.name) {
+                continue;
+            }
+            notices.push(self.missing(column, place));
+        }
+    }
+
+    /// The notice that a needed column is missing; without a part's name no row can be read at all.
+    fn missing(&self, column: &Column, place: &HeaderPlace<'_>) -> Notice {
+        let at = Place::line(place.kind.file_name(), place.line);
+        let name = column.name;
+        let consequence = match column.need {
+            Need::Always => "no row can be read without it",
+            _ => "every part is unproven without it",
+        };
+        Notice::warning("column-missing", at, format!("there is no column `{name}`: {consequence}"))
+            .expected(format!("a column `{name}`: {}", column.cell))
+            .mend("add it, or map the name that the file uses in `[columns]` of shop.toml")
+    }
+}
+
+fn brief(name: &str) -> String {
+    name.chars().take(40).collect()
+}
