@@ -1,0 +1,149 @@
+//! Sheet, shop file and catalogs, read from their files.
+
+use crate::arguments::Catalogs;
+use catalog::{ReadOptions, Shop, read_folder};
+use eligible::{Eligible, eligible};
+use notice::{Notice, Place, has_errors};
+use report::shortlist::Files;
+use sheet::{Sheet, ShopFile};
+use std::io::ErrorKind;
+use std::path::{Path, PathBuf};
+
+/// The name of the shop file in the folder of catalogs.
+pub(crate) const SHOP_FILE: &str = "shop.toml";
+
+/// A sheet with the shop that serves it.
+pub(crate) struct Loaded {
+    pub(crate) sheet: Sheet,
+    pub(crate) sheet_path: PathBuf,
+    sheet_bytes: Vec<u8>,
+    shop: Shop,
+    shop_bytes: Option<Vec<u8>>,
+    skip_broken_rows: bool,
+}
+
+impl Loaded {
+    /// Reads everything. All faults of all files go to `notices`; None where one of them is an error.
+    pub(crate) fn read(
+        sheet_path: &Path,
+        catalogs: &Catalogs,
+        set: &[String],
+        notices: &mut Vec<Notice>,
+    ) -> Option<Self> {
+        let shop_file = ShopText::read(catalogs, notices);
+        let sheet_bytes = read_file(sheet_path, notices);
+        // What a faulty shop file would have given, the sheet would be said to miss.
+        let shop_file = shop_file?;
+        let sheet_bytes = sheet_bytes?;
+        let sheet_name = sheet_path.display().to_string();
+        let sheet = text(&sheet_name, &sheet_bytes, notices)
+            .and_then(|text| sheet::read(&sheet_name, text, &shop_file.content, set, notices));
+        let needs_pots = sheet.as_ref().is_some_and(|s| s.rail.is_adjustable());
+        let shop = read_catalogs(catalogs, &shop_file.content, needs_pots, notices);
+        Some(Self {
+            sheet: sheet?,
+            sheet_path: sheet_path.to_owned(),
+            sheet_bytes,
+            shop: shop?,
+            shop_bytes: shop_file.bytes,
+            skip_broken_rows: catalogs.skip_broken_rows,
+        })
+    }
+
+    /// The rows that may be chosen; None where names in the sheet are at fault.
+    pub(crate) fn eligible(&self, notices: &mut Vec<Notice>) -> Option<Eligible<'_>> {
+        let mut found = Vec::new();
+        let eligible = eligible(&self.sheet, &self.shop, self.skip_broken_rows, &mut found);
+        let sound = !has_errors(&found);
+        notices.append(&mut found);
+        sound.then_some(eligible)
+    }
+
+    /// The files as read.
+    pub(crate) fn files(&self) -> Files<'_> {
+        Files {
+            sheet: &self.sheet_bytes,
+            shop: self.shop_bytes.as_deref().map(|bytes| (SHOP_FILE, bytes)),
+        }
+    }
+}
+
+/// The shop file with what it says.
+pub(crate) struct ShopText {
+    pub(crate) content: ShopFile,
+    bytes: Option<Vec<u8>>,
+}
+
+impl ShopText {
+    /// Reads the shop file of a folder; a folder without one has a shop that says nothing. None with
+    /// notices where it, or the folder itself, is at fault.
+    pub(crate) fn read(catalogs: &Catalogs, notices: &mut Vec<Notice>) -> Option<Self> {
+        let folder = &catalogs.catalogs;
+        if !folder.is_dir() {
+            let place = Place::file(folder.display().to_string());
+            notices.push(
+                Notice::error("folder-missing", place, "there is no such folder")
+                    .expected(
+                        "a folder with zeners.csv, opamps.csv, transistors.csv, resistors.csv",
+                    )
+                    .mend("name it with --catalogs DIR"),
+            );
+            return None;
+        }
+        let path = folder.join(SHOP_FILE);
+        if let Err(error) = path.symlink_metadata()
+            && error.kind() == ErrorKind::NotFound
+        {
+            return Some(Self { content: ShopFile::empty(), bytes: None });
+        }
+        let bytes = read_file(&path, notices)?;
+        let content = ShopFile::read(SHOP_FILE, text(SHOP_FILE, &bytes, notices)?, notices)?;
+        Some(Self { content, bytes: Some(bytes) })
+    }
+}
+
+/// Reads the catalogs of a folder; None with notices where one of them is at fault.
+pub(crate) fn read_catalogs(
+    catalogs: &Catalogs,
+    shop_file: &ShopFile,
+    needs_pots: bool,
+    notices: &mut Vec<Notice>,
+) -> Option<Shop> {
+    let options = ReadOptions {
+        renamed: shop_file.columns.clone(),
+        skip_broken_rows: catalogs.skip_broken_rows,
+        needs_pots,
+        needs_heatsinks: false,
+    };
+    read_folder(&catalogs.catalogs, &options, notices)
+}
+
+fn read_file(path: &Path, notices: &mut Vec<Notice>) -> Option<Vec<u8>> {
+    let fault = match std::fs::read(path) {
+        Ok(bytes) => return Some(bytes),
+        Err(fault) => fault,
+    };
+    let place = Place::file(path.display().to_string());
+    notices.push(if fault.kind() == ErrorKind::NotFound {
+        Notice::error("file-missing", place, "there is no such file")
+    } else {
+        Notice::error("file-unreadable", place, format!("the file can't be read: {fault}"))
+    });
+    None
+}
+
+fn text<'b>(name: &str, bytes: &'b [u8], notices: &mut Vec<Notice>) -> Option<&'b str> {
+    match std::str::from_utf8(bytes) {
+        Ok(text) => Some(text),
+        Err(fault) => {
+            let before = bytes.get(..fault.valid_up_to()).unwrap_or_default();
+            let breaks = before.iter().filter(|b| **b == b'\n').count();
+            let line = u32::try_from(breaks + 1).unwrap_or(u32::MAX);
+            notices.push(
+                Notice::error("file-encoding", Place::line(name, line), "the file is not in UTF-8")
+                    .mend("save it as UTF-8"),
+            );
+            None
+        }
+    }
+}

@@ -1,0 +1,152 @@
+//! What a folder of catalogs holds and lacks.
+
+use crate::look::{Look, grouped};
+use catalog::plausible::{Gap, gaps};
+use catalog::{Catalog, Kind, Shop};
+use comfy_table::{Attribute, Cell, CellAlignment, Table, TableComponent};
+use notice::{Notice, Severity};
+
+/// One line of the summary: a catalog.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Line {
+    /// Its file.
+    pub file: String,
+    /// The file is there.
+    pub is_there: bool,
+    /// Rows that can be chosen from.
+    pub rows: usize,
+    /// Rows that blank cells leave unproven.
+    pub unproven: usize,
+    /// Rows that are none of this tool's business.
+    pub left_out: usize,
+    /// Rows that something is wrong with.
+    pub broken: usize,
+    /// Notices about the file that are errors.
+    pub errors: usize,
+    /// Notices about the file that are warnings.
+    pub warnings: usize,
+}
+
+/// What a folder of catalogs holds and lacks.
+#[derive(Debug, Clone)]
+pub struct CatalogCheck<'a> {
+    /// A line for each catalog, in the order of kinds.
+    pub lines: Vec<Line>,
+    /// Blank cells of optional columns.
+    pub gaps: Vec<Gap>,
+    shop: &'a Shop,
+}
+
+impl<'a> CatalogCheck<'a> {
+    /// Sums up what was read, and the notices about it.
+    pub fn new(shop: &'a Shop, notices: &[Notice]) -> Self {
+        let lines = vec![
+            line(&shop.zeners, notices),
+            line(&shop.opamps, notices),
+            line(&shop.transistors, notices),
+            line(&shop.resistors, notices),
+            line(&shop.pots, notices),
+            line(&shop.heatsinks, notices),
+        ];
+        Self { lines, gaps: gaps(shop), shop }
+    }
+
+    /// The summary for people.
+    pub fn render(&self, look: &Look) -> String {
+        let mut text = self.table(look);
+        text.push('\n');
+        if !self.gaps.is_empty() {
+            text.push('\n');
+            text += &look.heading("Blank optional cells");
+            text.push('\n');
+            for kind in Kind::ALL {
+                text += &self.gaps_of(kind, look);
+            }
+        }
+        let unproven: Vec<_> = self.shop.unproven().collect();
+        if !unproven.is_empty() {
+            text.push('\n');
+            let heading = format!("Unproven parts, never chosen ({})", unproven.len());
+            text += &look.heading(&heading);
+            text.push('\n');
+            for (kind, part) in unproven {
+                let maker =
+                    if part.maker.is_empty() { String::new() } else { format!("{}/", part.maker) };
+                let line = format!(
+                    "{}:{} {maker}{} lacks {}",
+                    kind.file_name(),
+                    part.line,
+                    part.part,
+                    part.lacks.join(", ")
+                );
+                text += &look.paragraph(&line, 2, 4);
+            }
+        }
+        text
+    }
+
+    fn gaps_of(&self, kind: Kind, look: &Look) -> String {
+        let gaps: Vec<&Gap> = self.gaps.iter().filter(|g| g.kind == kind).collect();
+        let Some(first) = gaps.first() else { return String::new() };
+        let columns: Vec<String> = gaps
+            .iter()
+            .map(|g| format!("{} {}", g.column, grouped(&g.blank.to_string())))
+            .collect();
+        let rows = grouped(&first.rows.to_string());
+        let line = format!("{}, of {rows} rows: {}", kind.file_name(), columns.join(", "));
+        look.paragraph(&line, 2, 4)
+    }
+
+    fn table(&self, look: &Look) -> String {
+        let mut table = Table::new();
+        table.load_preset(comfy_table::presets::NOTHING);
+        let rule = if look.ascii { '-' } else { '─' };
+        table.set_style(TableComponent::HeaderLines, rule);
+        table.set_style(TableComponent::MiddleHeaderIntersections, rule);
+        if look.colour {
+            table.enforce_styling();
+        } else {
+            table.force_no_tty();
+        }
+        let title = |text: &str| {
+            let cell = Cell::new(text);
+            if look.colour { cell.add_attribute(Attribute::Bold) } else { cell }
+        };
+        table.set_header(
+            ["file", "rows", "unproven", "left out", "broken", "errors", "warnings"].map(title),
+        );
+        for line in &self.lines {
+            let number = |n: usize| look.text(&grouped(&n.to_string()));
+            let counts = [line.rows, line.unproven, line.left_out, line.broken]
+                .map(|n| if line.is_there { number(n) } else { "-".to_owned() });
+            let mut row = vec![look.text(&line.file)];
+            row.extend(counts);
+            row.extend([number(line.errors), number(line.warnings)]);
+            table.add_row(row);
+        }
+        for (place, column) in table.column_iter_mut().enumerate() {
+            column.set_padding((0, 2));
+            if place > 0 {
+                column.set_cell_alignment(CellAlignment::Right);
+            }
+        }
+        table.trim_fmt()
+    }
+}
+
+fn line<T>(catalog: &Catalog<T>, notices: &[Notice]) -> Line {
+    let file = catalog.kind.file_name();
+    let about = |severity| {
+        notices.iter().filter(|n| n.severity == severity && n.place.file == file).count()
+    };
+    Line {
+        file: file.to_owned(),
+        is_there: !catalog.files.is_empty(),
+        rows: catalog.rows.len(),
+        unproven: catalog.unproven.len(),
+        left_out: catalog.left_out.len(),
+        broken: catalog.broken,
+        errors: about(Severity::Error),
+        warnings: about(Severity::Warning),
+    }
+}

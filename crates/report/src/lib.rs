@@ -1,0 +1,32 @@
+//! What the search found, told as values, as JSON, as CSV and as a table for people.
+//!
+//! | module | what it holds |
+//! |---|---|
+//! | [`shortlist`] | the shortlist as one typed value, from which every output is made |
+//! | [`json`] | it as JSON, format 1 |
+//! | [`ranking_csv`] | its ranking as CSV |
+//! | [`terminal`] | it as a table with what was covered, assumed, left unchecked |
+//! | [`design`] | one candidate as a design file |
+//! | [`catalog_check`] | what a folder of catalogs holds and lacks |
+//! | [`notices`] | faults and doubts with the text at fault underlined |
+//! | [`remark`] | what no result checks, and cautions |
+//! | [`identity`] | a candidate's short id |
+//! | [`figure`], [`hash`], [`look`], [`spreadsheet`] | numbers, hashes, text for a terminal, text for a cell |
+//!
+//! This crate computes no check and no ranking. It does not know the argument parser, the terminal
+//! it is shown on, exit statuses, or how files are written.
+
+pub mod catalog_check;
+mod choice;
+pub mod design;
+pub mod figure;
+pub mod hash;
+pub mod identity;
+pub mod json;
+pub mod look;
+pub mod notices;
+pub mod ranking_csv;
+pub mod remark;
+pub mod shortlist;
+pub mod spreadsheet;
+pub mod terminal;
