@@ -14,7 +14,7 @@
 //! | [`check`] | the list of checks, what a finding is, and who takes findings |
 //! | [`curve`] | straight lines between the points of a data sheet's curves |
 //! | [`resistor`] | what a resistor may measure, and what it may stand, at the rail's temperatures |
-//! | [`reference`] | the zener with its bias resistor |
+//! | [`mod@reference`] | the zener with its bias resistor |
 //! | [`amplifier`] | the error amplifier's supply, input range and error |
 //! | [`divider`] | the divider of a [fixed](divider::fixed) or [adjustable](divider::adjustable) output |
 //! | [`pass`] | the pass transistor on its heatsink |

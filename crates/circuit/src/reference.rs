@@ -276,7 +276,7 @@ pub enum Chosen {
 /// to the target, by |ln(IZn/target)|; on a tie the larger. None where no value makes all hold.
 ///
 /// Walks outward from the target current, so that the first value that holds is the answer, and
-/// only over values that necessary conditions leave (see [`possible`]).
+/// only over values that necessary conditions leave.
 pub fn choose_rz(zener: &ZenerAtRail, line: &LineAtRail, rail: &Rail) -> Option<(Bias, f64)> {
     let (low, high) = possible(zener, line, rail);
     let values = line.values.get(low..high)?;

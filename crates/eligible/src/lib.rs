@@ -11,6 +11,7 @@ use circuit::parts::{Amplifier, Heatsink, Pot, ResistorLine, Transistor, Zener};
 use circuit::slot::Slot;
 use names::Named;
 use notice::Notice;
+use rayon::prelude::*;
 use select::problem::{Part, PassPart, Problem, SinkPart, Weights};
 use sheet::Sheet;
 
@@ -130,9 +131,9 @@ pub fn eligible<'a>(
         sheet,
         shop,
         zeners: sifted.rows(&shop.zeners.rows, Slot::Zener, |_| None),
-        bias_lines: sifted.rows(lines.iter().copied(), Slot::BiasLine, |_| None),
+        bias_lines: sifted.rows(lines.par_iter().copied(), Slot::BiasLine, |_| None),
         amplifiers: sifted.rows(&shop.opamps.rows, Slot::Amplifier, amplifier_lacks),
-        divider_lines: sifted.rows(lines.iter().copied(), Slot::DividerLine, |_| None),
+        divider_lines: sifted.rows(lines.par_iter().copied(), Slot::DividerLine, |_| None),
         pots: sifted.rows(pots, Slot::Pot, |_| None),
         transistors: sifted.rows(&shop.transistors.rows, Slot::Pass, transistor_lacks),
         heatsinks: sifted.rows(heatsinks, Slot::Heatsink, |_| None),
@@ -147,13 +148,13 @@ struct Sift<'a> {
 }
 
 impl<'a> Sift<'a> {
-    fn rows<'r, T: 'r>(
+    fn rows<'r, T: Sync + 'r>(
         &self,
-        rows: impl IntoIterator<Item = &'r Row<T>>,
+        rows: impl IntoParallelIterator<Item = &'r Row<T>>,
         slot: Slot,
-        lacks: impl Fn(&Row<T>) -> Option<&'static str>,
+        lacks: impl Fn(&Row<T>) -> Option<&'static str> + Sync,
     ) -> Vec<&'r Row<T>> {
-        rows.into_iter().filter(|row| self.bar(row, slot, &lacks).is_none()).collect()
+        rows.into_par_iter().filter(|row| self.bar(row, slot, &lacks).is_none()).collect()
     }
 
     /// What bars a row from a slot; None where it may be chosen.
@@ -266,7 +267,7 @@ impl<'a> Eligible<'a> {
             pots: parts(&self.pots, boards),
             transistors: self
                 .transistors
-                .iter()
+                .par_iter()
                 .zip(parts(&self.transistors, boards))
                 .map(|(row, part)| PassPart { part, package: row.package.as_deref() })
                 .collect(),
@@ -286,8 +287,11 @@ fn part<'a, T, F>(place: u32, row: &'a Row<T>, figures: &'a F, boards: u64) -> P
     Part { maker: &row.maker, part: &row.part, price: row.price.at(boards), row: place, figures }
 }
 
-fn parts<'a, F>(rows: &[&'a Row<F>], boards: u64) -> Vec<Part<'a, F>> {
-    (0..).zip(rows).map(|(place, row)| part(place, row, &row.figures, boards)).collect()
+fn parts<'a, F: Sync>(rows: &[&'a Row<F>], boards: u64) -> Vec<Part<'a, F>> {
+    rows.par_iter()
+        .enumerate()
+        .map(|(place, row)| part(place as u32, row, &row.figures, boards))
+        .collect()
 }
 
 /// A heatsink's figures as the circuit knows them.

@@ -229,11 +229,14 @@ impl<'g, 'p> Search<'g, 'p> {
 
     fn new(ground: &'g Ground<'p>, order: Order, limits: Spread) -> Self {
         let amplifiers = AmplifierSide::new(ground);
-        let (references, powers) = rayon::join(
-            || ReferenceSide::new(ground, &amplifiers),
+        let ((references, rest), powers) = rayon::join(
+            || {
+                let references = ReferenceSide::new(ground, &amplifiers);
+                let rest = RestOfSides::new(&references, &amplifiers);
+                (references, rest)
+            },
             || PowerSide::new(ground, &amplifiers),
         );
-        let rest = RestOfSides::new(&references, &amplifiers);
         let mut search = Self {
             ground,
             order,
