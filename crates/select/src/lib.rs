@@ -19,13 +19,15 @@
 
 mod boxes;
 pub mod candidate;
+mod company;
 pub mod count;
 pub mod front;
 mod grove;
+mod limit;
 pub mod problem;
 pub mod ranking;
 mod rest;
 mod search;
 mod sides;
 
-pub use search::SearchError;
+pub use limit::SearchError;

@@ -1,9 +1,10 @@
 //! The order of candidates, and the list of the best.
 
 use crate::candidate::Candidate;
+use crate::limit::SearchError;
 use crate::problem::{Ground, Problem, Weights};
 use crate::search::Search;
-pub use crate::search::SearchError;
+
 use circuit::slot::Slot;
 use std::collections::HashMap;
 
@@ -51,7 +52,7 @@ pub fn shortlist(
     spread: &Spread,
 ) -> Result<Vec<Candidate>, SearchError> {
     let ground = Ground::new(problem);
-    let mut search = Search::by_score(&ground, *spread);
+    let mut search = Search::new(&ground, *spread);
     let mut list = Vec::new();
     while list.len() < top {
         match search.next()? {

@@ -12,111 +12,26 @@
 //! takes.
 
 use crate::candidate::Candidate;
-use crate::grove::{Grove, Names, Node, Share};
+use crate::company::{Merits, ROOT, Sides};
+use crate::grove::{Names, Node, Share};
+use crate::limit::{self, SearchError};
 use crate::problem::Ground;
 use crate::ranking::{Spread, score};
 use crate::rest::Rest;
-use crate::sides::amplifier::{AmplifierMark, AmplifierSide};
-use crate::sides::power::{Mount, PowerMark, PowerNode, PowerSide};
-use crate::sides::reference::{ReferenceFigures, ReferenceNode, ReferenceSide};
 use crate::sides::{meet_power, meet_reference};
-use circuit::amplifier::AmplifierAtRail;
 use circuit::merit;
 use circuit::slot::Slot;
 use quantity::digits::rounded;
 use std::cmp::Ordering;
 use std::collections::{BinaryHeap, HashMap};
-use std::fmt;
-
-/// Memory that a search may take for itself, bytes.
-const MEMORY_LIMIT: usize = 600 << 20;
-
-/// Why a search ended early.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum SearchError {
-    /// The parts tie or balance so evenly that the list of what could still be first outgrew memory.
-    TooLarge {
-        /// How many triples were waiting.
-        waiting: usize,
-    },
-}
-
-impl fmt::Display for SearchError {
-    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        match self {
-            Self::TooLarge { waiting } => write!(
-                f,
-                "the search holds {waiting} sets of candidates of which each could still be first, \
-                 and would need more than {} MiB; pin a slot or tighten the sheet",
-                MEMORY_LIMIT >> 20
-            ),
-        }
-    }
-}
-
-impl std::error::Error for SearchError {}
-
-/// What sides that are not yet looked at add at least.
-struct RestOfSides {
-    references: Rest,
-    amplifiers: Rest,
-    /// References and amplifiers together.
-    both: Rest,
-    /// How many reference nodes there will be when it is worth while to look at them again.
-    next_look: usize,
-}
-
-impl RestOfSides {
-    /// So many reference nodes before the first look.
-    const FIRST_LOOK: usize = 512;
-
-    fn new(references: &ReferenceSide<'_, '_>, amplifiers: &AmplifierSide) -> Self {
-        let references = Rest::of(references.shares());
-        let amplifiers = Rest::of(amplifiers.shares());
-        let both = references.with(&amplifiers);
-        Self { references, amplifiers, both, next_look: Self::FIRST_LOOK }
-    }
-
-    /// Takes in what has become known of the references, whenever their nodes have grown by half.
-    fn learn(&mut self, references: &Grove<ReferenceSide<'_, '_>>) {
-        if references.count() >= self.next_look {
-            self.next_look = references.count() * 3 / 2;
-            self.references = Rest::of(references.frontier());
-            self.both = self.references.with(&self.amplifiers);
-        }
-    }
-}
-
-/// The node with all choices of a side.
-const ROOT: u32 = 0;
-
-/// Some reference side suits an amplifier. Grows the tree of references where it looks.
-fn suits_any(
-    ground: &Ground<'_>,
-    references: &mut Grove<ReferenceSide<'_, '_>>,
-    amp: &AmplifierAtRail,
-) -> bool {
-    let mut open: Vec<u32> = references.root().into_iter().collect();
-    while let Some(id) = open.pop() {
-        let node = references.get(id);
-        if node.share.is_impossible() || meet_reference(ground, &node.figures, amp).is_none() {
-            continue;
-        }
-        if node.size == 1 {
-            return true;
-        }
-        open.extend(references.children(id, |_| true));
-    }
-    false
-}
 
 /// What decides the order of two candidates, at ten significant digits.
 #[derive(Clone, Copy, PartialEq)]
 pub(crate) struct Key {
-    first: f64,
-    pub cost: f64,
-    pub stress: f64,
-    pub loss: f64,
+    score: f64,
+    cost: f64,
+    stress: f64,
+    loss: f64,
     /// Places by name in the order of [`Slot::BY_NAME`].
     names: Names,
 }
@@ -125,13 +40,13 @@ impl Eq for Key {}
 
 impl Key {
     const LEAST: Key =
-        Key { first: 0.0, cost: 0.0, stress: 0.0, loss: 0.0, names: [0; Slot::COUNT] };
+        Key { score: 0.0, cost: 0.0, stress: 0.0, loss: 0.0, names: [0; Slot::COUNT] };
 }
 
 impl Ord for Key {
     fn cmp(&self, other: &Self) -> Ordering {
-        self.first
-            .total_cmp(&other.first)
+        self.score
+            .total_cmp(&other.score)
             .then_with(|| self.cost.total_cmp(&other.cost))
             .then_with(|| self.stress.total_cmp(&other.stress))
             .then_with(|| self.loss.total_cmp(&other.loss))
@@ -143,15 +58,6 @@ impl PartialOrd for Key {
     fn partial_cmp(&self, other: &Self) -> Option<Ordering> {
         Some(self.cmp(other))
     }
-}
-
-/// What a list is ordered by.
-#[derive(Clone, Copy, PartialEq)]
-pub(crate) enum Order {
-    /// By rank.
-    Score,
-    /// By cost, stress, loss: a candidate comes after all that beat it.
-    Front,
 }
 
 #[derive(Clone, Copy)]
@@ -204,11 +110,7 @@ enum SideName {
 /// Candidates one after another, in order.
 pub(crate) struct Search<'g, 'p> {
     ground: &'g Ground<'p>,
-    order: Order,
-    references: Grove<ReferenceSide<'g, 'p>>,
-    amplifiers: Grove<AmplifierSide>,
-    powers: Grove<PowerSide<'g, 'p>>,
-    rest: RestOfSides,
+    sides: Sides<'g, 'p>,
     heap: BinaryHeap<Triple>,
     limits: Spread,
     /// Rows that a part (slot, place by name) has in the list so far.
@@ -217,58 +119,48 @@ pub(crate) struct Search<'g, 'p> {
 }
 
 impl<'g, 'p> Search<'g, 'p> {
-    /// Candidates in rank order.
-    pub fn by_score(ground: &'g Ground<'p>, limits: Spread) -> Self {
-        Self::new(ground, Order::Score, limits)
-    }
-
-    /// Candidates in an order in which each comes after all that beat it.
-    pub fn for_front(ground: &'g Ground<'p>) -> Self {
-        Self::new(ground, Order::Front, crate::ranking::NO_SPREAD)
-    }
-
-    fn new(ground: &'g Ground<'p>, order: Order, limits: Spread) -> Self {
-        let amplifiers = AmplifierSide::new(ground);
-        let ((references, rest), powers) = rayon::join(
-            || {
-                let references = ReferenceSide::new(ground, &amplifiers);
-                let rest = RestOfSides::new(&references, &amplifiers);
-                (references, rest)
-            },
-            || PowerSide::new(ground, &amplifiers),
-        );
+    /// Candidates in rank order, of which `limits` lets so many share a part.
+    pub fn new(ground: &'g Ground<'p>, limits: Spread) -> Self {
         let mut search = Self {
             ground,
-            order,
-            references: Grove::new(references),
-            amplifiers: Grove::new(amplifiers),
-            powers: Grove::new(powers),
-            rest,
+            sides: Sides::new(ground),
             heap: BinaryHeap::new(),
             limits,
             rows: HashMap::new(),
             taken: 0,
         };
-        let roots = (search.references.root(), search.amplifiers.root(), search.powers.root());
-        if let (Some(reference), Some(amplifier), Some(power)) = roots {
+        if let Some([reference, amplifier, power]) = search.sides.roots() {
+            search.push(reference, amplifier, power, None, None);
+            search.sound();
+            search.heap.clear();
             search.push(reference, amplifier, power, None, None);
         }
         search
     }
 
-    /// The next candidate; None where there is no other.
-    pub fn next(&mut self) -> Result<Option<Candidate>, SearchError> {
-        self.next_unless(|_| false)
+    /// Follows one promising power side and amplifier down to the best reference beside them.
+    ///
+    /// What is known of references before their values are chosen is too hopeful. As long as it is,
+    /// every power side looks as if it could be first. One sounding makes the references that matter
+    /// known, and the search proper can tell power sides apart from the start.
+    fn sound(&mut self) {
+        while let Some(triple) = self.heap.pop() {
+            match self.side_to_split(&triple) {
+                None => break,
+                Some(SideName::Reference) => self.split(&triple, SideName::Reference),
+                Some(side) => {
+                    self.heap.clear();
+                    self.split(&triple, side);
+                }
+            }
+        }
+        self.sides.learn();
     }
 
-    /// The next candidate whose key, and that of all sets it came from, is not `beaten`. A set may be
-    /// beaten only where every candidate in it is.
-    pub fn next_unless(
-        &mut self,
-        beaten: impl Fn(&Key) -> bool,
-    ) -> Result<Option<Candidate>, SearchError> {
+    /// The next candidate in rank order; None where there is no other.
+    pub fn next(&mut self) -> Result<Option<Candidate>, SearchError> {
         while let Some(mut triple) = self.heap.pop() {
-            if beaten(&triple.key) || self.is_full(&triple) {
+            if self.is_full(&triple) {
                 continue;
             }
             // More may be known of its nodes than when it was put there.
@@ -284,7 +176,9 @@ impl<'g, 'p> Search<'g, 'p> {
             }
             match self.side_to_split(&triple) {
                 None => {
-                    let candidate = self.candidate(&triple);
+                    let meeting = triple.at_input.max(triple.at_output);
+                    let nodes = [triple.reference, triple.amplifier, triple.power];
+                    let candidate = self.sides.candidate(nodes, meeting);
                     self.count_rows(&triple);
                     return Ok(candidate);
                 }
@@ -295,43 +189,21 @@ impl<'g, 'p> Search<'g, 'p> {
     }
 
     /// Replaces a node of a triple by its parts.
-    ///
-    /// When a node's parts are made, those are left out for which no amplifier is found at all; an
-    /// amplifier is left out that no reference suits. So what can't be in any candidate is found once,
-    /// not once for each company.
     fn split(&mut self, triple: &Triple, side: SideName) {
         let Triple { reference, amplifier, power, at_input, at_output, .. } = *triple;
-        let ground = self.ground;
         match side {
             SideName::Reference => {
-                let amplifiers = &mut self.amplifiers.growth;
-                let stands = |child: &ReferenceNode| {
-                    amplifiers.any(|amp| meet_reference(ground, &child.figures, amp).is_some())
-                };
-                let children = self.references.children(reference, stands);
-                self.rest.learn(&self.references);
-                for child in children {
+                for child in self.sides.reference_parts(reference) {
                     self.push(child, amplifier, power, None, Some(at_output));
                 }
             }
             SideName::Amplifier => {
-                let references = &mut self.references;
-                let amplifiers = self.amplifiers.children(amplifier, |child| {
-                    child.size > 1 || suits_any(ground, references, &child.figures)
-                });
-                for child in amplifiers {
+                for child in self.sides.amplifier_parts(amplifier) {
                     self.push(reference, child, power, None, None);
                 }
             }
             SideName::Power => {
-                let amplifiers = &mut self.amplifiers.growth;
-                let is_mounting = self.powers.get(power).decided.has(Slot::Pass);
-                let stands = |child: &PowerNode| {
-                    // A mounting is driven as the transistor is.
-                    is_mounting
-                        || amplifiers.any(|amp| meet_power(ground, amp, &child.figures).is_some())
-                };
-                for child in self.powers.children(power, stands) {
+                for child in self.sides.power_parts(power) {
                     self.push(reference, amplifier, child, Some(at_input), None);
                 }
             }
@@ -348,9 +220,9 @@ impl<'g, 'p> Search<'g, 'p> {
         at_input: Option<f64>,
         at_output: Option<f64>,
     ) {
-        let r = self.references.get(reference);
-        let a = self.amplifiers.get(amplifier);
-        let p = self.powers.get(power);
+        let r = self.sides.references.get(reference);
+        let a = self.sides.amplifiers.get(amplifier);
+        let p = self.sides.powers.get(power);
         let Some(at_output) = at_output.or_else(|| meet_power(self.ground, &a.figures, &p.figures))
         else {
             return;
@@ -371,25 +243,19 @@ impl<'g, 'p> Search<'g, 'p> {
     /// The least key that any candidate of a triple could have; None where a node of it is known to
     /// hold no choice.
     fn key(&self, triple: &Triple) -> Option<Key> {
-        let r = self.references.get(triple.reference);
-        let a = self.amplifiers.get(triple.amplifier);
-        let p = self.powers.get(triple.power);
+        let r = self.sides.references.get(triple.reference);
+        let a = self.sides.amplifiers.get(triple.amplifier);
+        let p = self.sides.powers.get(triple.power);
         let shares = [&r.share, &a.share, &p.share];
         if shares.iter().any(|share| share.is_impossible()) {
             return None;
         }
         let meeting = triple.at_input.max(triple.at_output);
-        let mut merits = self.merits(shares, meeting);
-        if self.order == Order::Score {
-            merits.score = merits.score.max(self.least_score(triple, meeting));
-        }
-        let cost = rounded(merits.cost);
+        let mut merits: Merits = self.sides.merits(shares, meeting);
+        merits.score = merits.score.max(self.least_score(triple, meeting));
         Some(Key {
-            first: match self.order {
-                Order::Score => rounded(merits.score),
-                Order::Front => cost,
-            },
-            cost,
+            score: rounded(merits.score),
+            cost: rounded(merits.cost),
             stress: rounded(merits.stress),
             loss: rounded(merits.loss),
             names: Slot::BY_NAME
@@ -397,42 +263,41 @@ impl<'g, 'p> Search<'g, 'p> {
         })
     }
 
-    /// The least score of a triple, of which whole sides may not have been looked at.
+    /// What a triple's known nodes add, beside the rest of the sides that have not been looked into;
+    /// None where there is none such.
+    fn known_and_rest(&self, triple: &Triple) -> Option<(Share, &Rest)> {
+        if triple.reference != ROOT {
+            return None;
+        }
+        let power = self.sides.powers.get(triple.power).share;
+        if triple.amplifier == ROOT {
+            return Some((power, &self.sides.rest.both));
+        }
+        let amplifier = self.sides.amplifiers.get(triple.amplifier).share;
+        Some((amplifier.beside(&power), &self.sides.rest.references))
+    }
+
+    /// The least score of a triple, of which whole sides may not have been looked into.
     fn least_score(&self, triple: &Triple, meeting: f64) -> f64 {
-        let power = self.powers.get(triple.power).share;
-        let (known, rest) = match (triple.reference, triple.amplifier) {
-            (ROOT, ROOT) => (power, &self.rest.both),
-            (ROOT, amplifier) => {
-                (self.amplifiers.get(amplifier).share.beside(&power), &self.rest.references)
-            }
-            _ => return 0.0,
-        };
+        let Some((known, rest)) = self.known_and_rest(triple) else { return 0.0 };
         let scores = rest.shares().iter().map(|share| {
             let together = share.beside(&known);
             let loss = merit::loss(self.ground.rail(), together.current_a);
             score(&self.ground.problem.weights, together.cost, loss, together.stress.max(meeting))
         });
         // The sums are made in another order than those of a candidate: the last bits may differ.
-        scores.fold(f64::INFINITY, f64::min) * (1.0 - 1e-14)
-    }
-
-    fn merits(&self, [r, a, p]: [&Share; 3], meeting: f64) -> Merits {
-        let cost = r.cost + a.cost + p.cost;
-        let loss = merit::loss(self.ground.rail(), r.current_a + a.current_a);
-        let stress = r.stress.max(a.stress).max(p.stress).max(meeting);
-        let score = score(&self.ground.problem.weights, cost, loss, stress);
-        Merits { cost, loss, stress, score }
+        scores.fold(f64::INFINITY, f64::min) * LAST_BITS
     }
 
     /// The node to take apart; None where all are choices made.
     ///
     /// The power side weighs most in cost and stress, so a list of what is best is sorted by it first.
     fn side_to_split(&self, triple: &Triple) -> Option<SideName> {
-        if self.powers.get(triple.power).size > 1 {
+        if self.sides.powers.get(triple.power).size > 1 {
             Some(SideName::Power)
-        } else if self.amplifiers.get(triple.amplifier).size > 1 {
+        } else if self.sides.amplifiers.get(triple.amplifier).size > 1 {
             Some(SideName::Amplifier)
-        } else if self.references.get(triple.reference).size > 1 {
+        } else if self.sides.references.get(triple.reference).size > 1 {
             Some(SideName::Reference)
         } else {
             None
@@ -440,14 +305,8 @@ impl<'g, 'p> Search<'g, 'p> {
     }
 
     fn check_memory(&self) -> Result<(), SearchError> {
-        let in_use = self.heap.capacity() * size_of::<Triple>()
-            + self.references.memory()
-            + self.amplifiers.memory()
-            + self.powers.memory();
-        if in_use > MEMORY_LIMIT {
-            return Err(SearchError::TooLarge { waiting: self.heap.len() });
-        }
-        Ok(())
+        let in_use = self.heap.capacity() * size_of::<Triple>() + self.sides.memory();
+        limit::check(in_use, self.heap.len())
     }
 
     /// The slots in which all candidates of a triple have the same part, with its place by name.
@@ -456,9 +315,9 @@ impl<'g, 'p> Search<'g, 'p> {
             let names = node.names;
             node.decided.iter().map(move |slot| (slot, names[slot as usize]))
         }
-        of(self.references.get(triple.reference))
-            .chain(of(self.amplifiers.get(triple.amplifier)))
-            .chain(of(self.powers.get(triple.power)))
+        of(self.sides.references.get(triple.reference))
+            .chain(of(self.sides.amplifiers.get(triple.amplifier)))
+            .chain(of(self.sides.powers.get(triple.power)))
             .filter(|&(_, place)| place > 0)
     }
 
@@ -481,44 +340,7 @@ impl<'g, 'p> Search<'g, 'p> {
             }
         }
     }
-
-    /// The candidate that a complete triple stands for.
-    fn candidate(&self, triple: &Triple) -> Option<Candidate> {
-        let r = self.references.get(triple.reference);
-        let a = self.amplifiers.get(triple.amplifier);
-        let p = self.powers.get(triple.power);
-        let ReferenceFigures::Complete(complete) = &r.figures else { return None };
-        let AmplifierMark::One(amplifier) = a.mark else { return None };
-        let PowerMark::Done(pass, mount) = p.mark else { return None };
-        let mut places = [None; Slot::COUNT];
-        places[Slot::Zener as usize] = Some(complete.zener);
-        places[Slot::BiasLine as usize] = Some(complete.bias_line);
-        places[Slot::Amplifier as usize] = Some(amplifier);
-        places[Slot::DividerLine as usize] = Some(complete.divider_line);
-        places[Slot::Pot as usize] = complete.pot;
-        places[Slot::Pass as usize] = Some(pass);
-        places[Slot::Heatsink as usize] = match mount {
-            Mount::Sink(sink) => Some(sink),
-            Mount::Own | Mount::None => None,
-        };
-        let meeting = triple.at_input.max(triple.at_output);
-        let merits = self.merits([&r.share, &a.share, &p.share], meeting);
-        Some(Candidate {
-            places,
-            rz: complete.bias.rz,
-            divider: complete.divider,
-            cost: merits.cost,
-            loss: merits.loss,
-            stress: merits.stress,
-            score: merits.score,
-        })
-    }
 }
 
-/// The figures that rank a candidate, in full.
-struct Merits {
-    cost: f64,
-    loss: f64,
-    stress: f64,
-    score: f64,
-}
+/// Lowers a bound whose sums were made in another order than those of a candidate.
+const LAST_BITS: f64 = 1.0 - 1e-14;
