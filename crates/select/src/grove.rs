@@ -1,5 +1,7 @@
 //! A side of the circuit as a tree of choices that grows where the search looks.
 
+use crate::limit::make_room;
+use crate::rest::Rest;
 use circuit::slot::Slot;
 use std::ops::Range;
 
@@ -15,6 +17,9 @@ pub(crate) struct Share {
 }
 
 impl Share {
+    /// Nothing at all.
+    pub const NOTHING: Share = Share { cost: 0.0, current_a: 0.0, stress: 0.0 };
+
     /// The share of a node that falls into no part: no candidate has it.
     const MORE_THAN_ANY: Share =
         Share { cost: f64::INFINITY, current_a: f64::INFINITY, stress: f64::INFINITY };
@@ -47,6 +52,33 @@ impl Share {
         self.cost = self.cost.min(other.cost);
         self.current_a = self.current_a.min(other.current_a);
         self.stress = self.stress.min(other.stress);
+    }
+}
+
+/// How many shares a node keeps apart.
+const FEW: usize = 6;
+
+/// A few shares such that every choice of a node adds at least one of them in each figure.
+///
+/// The least cost and the least current of a node seldom belong to one choice. A few shares bound what
+/// follows from them much closer than the one share that has the least of each figure.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(crate) struct Shares {
+    few: [Share; FEW],
+    count: usize,
+}
+
+impl Shares {
+    pub fn as_slice(&self) -> &[Share] {
+        &self.few[..self.count]
+    }
+
+    /// From the shares of all parts of a node.
+    fn of(parts: impl Iterator<Item = Share>) -> Self {
+        let rest = Rest::of_at_most(parts.filter(|share| !share.is_impossible()), FEW);
+        let mut few = [Share::MORE_THAN_ANY; FEW];
+        few.iter_mut().zip(rest.shares()).for_each(|(place, share)| *place = *share);
+        Self { few, count: rest.shares().len() }
     }
 }
 
@@ -134,6 +166,8 @@ pub(crate) struct Grove<G: Growth> {
 struct Links {
     parent: Option<u32>,
     children: Option<Range<u32>>,
+    /// What its choices add at least, closer than the node's own share, once its parts are known.
+    shares: Option<Box<Shares>>,
 }
 
 impl<G: Growth> Grove<G> {
@@ -145,7 +179,7 @@ impl<G: Growth> Grove<G> {
         if self.nodes.is_empty() {
             let root = self.growth.root()?;
             self.nodes.push(root);
-            self.links.push(Links { parent: None, children: None });
+            self.links.push(Links { parent: None, children: None, shares: None });
         }
         Some(0)
     }
@@ -169,8 +203,11 @@ impl<G: Growth> Grove<G> {
         self.growth.children(&node, &mut self.scratch);
         self.scratch.retain(|child| stands(child));
         let from = self.nodes.len() as u32;
+        make_room(&mut self.nodes, self.scratch.len());
+        make_room(&mut self.links, self.scratch.len());
         self.nodes.append(&mut self.scratch);
-        self.links.resize(self.nodes.len(), Links { parent: Some(id), children: None });
+        let alone = Links { parent: Some(id), children: None, shares: None };
+        self.links.resize(self.nodes.len(), alone);
         let range = from..self.nodes.len() as u32;
         self.links[id as usize].children = Some(range.clone());
         self.raise(id);
@@ -193,23 +230,34 @@ impl<G: Growth> Grove<G> {
             .map(|(node, _)| node.share)
     }
 
-    /// Raises the share of a node, and of those above it, to what their parts add at least.
+    /// Raises the shares of a node, and of those above it, to what their parts add at least.
     fn raise(&mut self, id: u32) {
         let mut next = Some(id);
         while let Some(id) = next {
-            let Links { parent, children } = self.links[id as usize].clone();
+            let Links { parent, children, shares: before } = self.links[id as usize].clone();
             let Some(children) = children else { return };
             let mut least = Share::MORE_THAN_ANY;
-            for child in children {
-                least.least(&self.nodes[child as usize].share);
+            for part in &self.nodes[children.start as usize..children.end as usize] {
+                least.least(&part.share);
             }
+            let shares = Shares::of(children.flat_map(|part| self.shares(part).iter().copied()));
             let share = &mut self.nodes[id as usize].share;
             let raised = share.raised_to(&least);
-            if raised == *share {
+            if raised == *share && before.as_deref() == Some(&shares) {
                 return;
             }
             *share = raised;
+            self.links[id as usize].shares = Some(Box::new(shares));
             next = parent;
+        }
+    }
+
+    /// A few shares such that every choice of a node adds at least one of them; none where it is known
+    /// to hold no choice.
+    pub fn shares(&self, id: u32) -> &[Share] {
+        match &self.links[id as usize].shares {
+            Some(shares) => shares.as_slice(),
+            None => std::slice::from_ref(&self.nodes[id as usize].share),
         }
     }
 

@@ -52,7 +52,7 @@ pub fn shortlist(
     spread: &Spread,
 ) -> Result<Vec<Candidate>, SearchError> {
     let ground = Ground::new(problem);
-    let mut search = Search::new(&ground, *spread);
+    let mut search = Search::new(&ground, *spread)?;
     let mut list = Vec::new();
     while list.len() < top {
         match search.next()? {

@@ -8,7 +8,7 @@ use crate::grove::Share;
 use std::collections::BTreeMap;
 
 /// More shares than this are joined into coarser ones.
-const MOST: usize = 48;
+const USUAL: usize = 48;
 
 /// Shares such that every choice adds at least one of them in each figure.
 #[derive(Debug, Clone)]
@@ -17,6 +17,11 @@ pub(crate) struct Rest(Vec<Share>);
 impl Rest {
     /// From the shares of all choices of a side.
     pub fn of(shares: impl Iterator<Item = Share>) -> Self {
+        Self::of_at_most(shares, USUAL)
+    }
+
+    /// The same with at most so many shares kept apart: the more, the closer the bound.
+    pub fn of_at_most(shares: impl Iterator<Item = Share>, most: usize) -> Self {
         let mut shares: Vec<Share> = shares.collect();
         shares.sort_unstable_by(|a, b| {
             a.cost
@@ -44,7 +49,7 @@ impl Rest {
             stairs.insert(current, share.stress);
             least.push(share);
         }
-        while least.len() > MOST {
+        while least.len() > most {
             least = least.chunks(2).map(joined).collect();
         }
         Self(least)

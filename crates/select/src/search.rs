@@ -12,14 +12,12 @@
 //! takes.
 
 use crate::candidate::Candidate;
-use crate::company::{Merits, ROOT, Sides};
+use crate::company::{ROOT, Sides};
 use crate::grove::{Names, Node, Share};
 use crate::limit::{self, SearchError};
 use crate::problem::Ground;
-use crate::ranking::{Spread, score};
-use crate::rest::Rest;
+use crate::ranking::Spread;
 use crate::sides::{meet_power, meet_reference};
-use circuit::merit;
 use circuit::slot::Slot;
 use quantity::digits::rounded;
 use std::cmp::Ordering;
@@ -120,7 +118,7 @@ pub(crate) struct Search<'g, 'p> {
 
 impl<'g, 'p> Search<'g, 'p> {
     /// Candidates in rank order, of which `limits` lets so many share a part.
-    pub fn new(ground: &'g Ground<'p>, limits: Spread) -> Self {
+    pub fn new(ground: &'g Ground<'p>, limits: Spread) -> Result<Self, SearchError> {
         let mut search = Self {
             ground,
             sides: Sides::new(ground),
@@ -129,13 +127,13 @@ impl<'g, 'p> Search<'g, 'p> {
             rows: HashMap::new(),
             taken: 0,
         };
-        if let Some([reference, amplifier, power]) = search.sides.roots() {
-            search.push(reference, amplifier, power, None, None);
-            search.sound();
+        if let Some(roots) = search.sides.roots() {
+            search.push(roots, None, None, Key::LEAST);
+            search.sound()?;
             search.heap.clear();
-            search.push(reference, amplifier, power, None, None);
+            search.push(roots, None, None, Key::LEAST);
         }
-        search
+        Ok(search)
     }
 
     /// Follows one promising power side and amplifier down to the best reference beside them.
@@ -143,8 +141,9 @@ impl<'g, 'p> Search<'g, 'p> {
     /// What is known of references before their values are chosen is too hopeful. As long as it is,
     /// every power side looks as if it could be first. One sounding makes the references that matter
     /// known, and the search proper can tell power sides apart from the start.
-    fn sound(&mut self) {
+    fn sound(&mut self) -> Result<(), SearchError> {
         while let Some(triple) = self.heap.pop() {
+            self.step()?;
             match self.side_to_split(&triple) {
                 None => break,
                 Some(SideName::Reference) => self.split(&triple, SideName::Reference),
@@ -155,6 +154,7 @@ impl<'g, 'p> Search<'g, 'p> {
             }
         }
         self.sides.learn();
+        Ok(())
     }
 
     /// The next candidate in rank order; None where there is no other.
@@ -170,10 +170,7 @@ impl<'g, 'p> Search<'g, 'p> {
                 self.heap.push(triple);
                 continue;
             }
-            self.taken += 1;
-            if self.taken.is_multiple_of(4096) {
-                self.check_memory()?;
-            }
+            self.step()?;
             match self.side_to_split(&triple) {
                 None => {
                     let meeting = triple.at_input.max(triple.at_output);
@@ -194,31 +191,31 @@ impl<'g, 'p> Search<'g, 'p> {
         match side {
             SideName::Reference => {
                 for child in self.sides.reference_parts(reference) {
-                    self.push(child, amplifier, power, None, Some(at_output));
+                    self.push([child, amplifier, power], None, Some(at_output), triple.key);
                 }
             }
             SideName::Amplifier => {
                 for child in self.sides.amplifier_parts(amplifier) {
-                    self.push(reference, child, power, None, None);
+                    self.push([reference, child, power], None, None, triple.key);
                 }
             }
             SideName::Power => {
                 for child in self.sides.power_parts(power) {
-                    self.push(reference, amplifier, child, Some(at_input), None);
+                    self.push([reference, amplifier, child], Some(at_input), None, triple.key);
                 }
             }
         }
     }
 
     /// Puts a triple on the heap unless it holds no feasible candidate. What is known of the two
-    /// meetings is handed over.
+    /// meetings is handed over, and so is the key of the triple that it is a part of: no candidate of a
+    /// part comes before all of the whole.
     fn push(
         &mut self,
-        reference: u32,
-        amplifier: u32,
-        power: u32,
+        [reference, amplifier, power]: [u32; 3],
         at_input: Option<f64>,
         at_output: Option<f64>,
+        of_whole: Key,
     ) {
         let r = self.sides.references.get(reference);
         let a = self.sides.amplifiers.get(amplifier);
@@ -235,58 +232,61 @@ impl<'g, 'p> Search<'g, 'p> {
         let key = Key::LEAST;
         let mut triple = Triple { key, reference, amplifier, power, at_input, at_output };
         if let Some(key) = self.key(&triple) {
-            triple.key = key;
+            triple.key = key.max(of_whole);
+            if self.heap.len() == self.heap.capacity() {
+                self.heap.reserve_exact(self.heap.len() / 4 + 1024);
+            }
             self.heap.push(triple);
         }
     }
 
     /// The least key that any candidate of a triple could have; None where a node of it is known to
     /// hold no choice.
+    ///
+    /// Of each side one of a few shares is added at least, together where sides have not been looked
+    /// into; so the key is at least that of one of these sums, and the least of them bounds it. That it
+    /// is the least as a whole, not figure by figure, matters where many candidates tie in score.
     fn key(&self, triple: &Triple) -> Option<Key> {
         let r = self.sides.references.get(triple.reference);
         let a = self.sides.amplifiers.get(triple.amplifier);
         let p = self.sides.powers.get(triple.power);
-        let shares = [&r.share, &a.share, &p.share];
-        if shares.iter().any(|share| share.is_impossible()) {
+        if [&r.share, &a.share, &p.share].iter().any(|share| share.is_impossible()) {
             return None;
         }
         let meeting = triple.at_input.max(triple.at_output);
-        let mut merits: Merits = self.sides.merits(shares, meeting);
-        merits.score = merits.score.max(self.least_score(triple, meeting));
-        Some(Key {
-            score: rounded(merits.score),
-            cost: rounded(merits.cost),
-            stress: rounded(merits.stress),
-            loss: rounded(merits.loss),
-            names: Slot::BY_NAME
-                .map(|slot| [r.names, a.names, p.names].iter().map(|n| n[slot as usize]).sum()),
-        })
-    }
-
-    /// What a triple's known nodes add, beside the rest of the sides that have not been looked into;
-    /// None where there is none such.
-    fn known_and_rest(&self, triple: &Triple) -> Option<(Share, &Rest)> {
-        if triple.reference != ROOT {
-            return None;
+        let (known, others) = match (triple.reference == ROOT, triple.amplifier == ROOT) {
+            (true, true) => (Share::NOTHING, self.sides.rest.both.shares()),
+            (true, false) => (a.share, self.sides.rest.references.shares()),
+            _ => (a.share, self.sides.references.shares(triple.reference)),
+        };
+        // Sums in another order than a candidate's may differ in the last bits; a candidate's own are
+        // made in its order.
+        let is_complete = [r.size, a.size, p.size] == [1; 3];
+        let lowered = if is_complete { 1.0 } else { LAST_BITS };
+        let names = Slot::BY_NAME
+            .map(|slot| [r.names, a.names, p.names].iter().map(|n| n[slot as usize]).sum());
+        let mut least: Option<(f64, Key)> = None;
+        for power in self.sides.powers.shares(triple.power) {
+            for other in others {
+                let merits = self.sides.merits([other, &known, power], meeting);
+                // Far behind, so that rounding can't bring it to the front.
+                if least.is_some_and(|(score, _)| merits.score > score * (1.0 + 1e-8)) {
+                    continue;
+                }
+                let key = Key {
+                    score: rounded(merits.score * lowered),
+                    cost: rounded(merits.cost * lowered),
+                    stress: rounded(merits.stress),
+                    loss: rounded(merits.loss * lowered),
+                    names,
+                };
+                if least.is_none_or(|(_, so_far)| key < so_far) {
+                    let score = least.map_or(merits.score, |(score, _)| score.min(merits.score));
+                    least = Some((score, key));
+                }
+            }
         }
-        let power = self.sides.powers.get(triple.power).share;
-        if triple.amplifier == ROOT {
-            return Some((power, &self.sides.rest.both));
-        }
-        let amplifier = self.sides.amplifiers.get(triple.amplifier).share;
-        Some((amplifier.beside(&power), &self.sides.rest.references))
-    }
-
-    /// The least score of a triple, of which whole sides may not have been looked into.
-    fn least_score(&self, triple: &Triple, meeting: f64) -> f64 {
-        let Some((known, rest)) = self.known_and_rest(triple) else { return 0.0 };
-        let scores = rest.shares().iter().map(|share| {
-            let together = share.beside(&known);
-            let loss = merit::loss(self.ground.rail(), together.current_a);
-            score(&self.ground.problem.weights, together.cost, loss, together.stress.max(meeting))
-        });
-        // The sums are made in another order than those of a candidate: the last bits may differ.
-        scores.fold(f64::INFINITY, f64::min) * LAST_BITS
+        least.map(|(_, key)| key)
     }
 
     /// The node to take apart; None where all are choices made.
@@ -304,7 +304,12 @@ impl<'g, 'p> Search<'g, 'p> {
         }
     }
 
-    fn check_memory(&self) -> Result<(), SearchError> {
+    /// Counts a triple that is taken apart, and looks at the memory now and then.
+    fn step(&mut self) -> Result<(), SearchError> {
+        self.taken += 1;
+        if !self.taken.is_multiple_of(4096) {
+            return Ok(());
+        }
         let in_use = self.heap.capacity() * size_of::<Triple>() + self.sides.memory();
         limit::check(in_use, self.heap.len())
     }
