@@ -92,8 +92,10 @@ fn quick(x: f64) -> Option<f64> {
     if !(1e-11..1e9).contains(&size) {
         return None;
     }
-    // The power that brings the figure to 1e9 ≤ y < 1e10; the estimate may be one off.
-    let mut p = (9 - size.log10().floor() as i32).clamp(1, 22) as usize;
+    // The power that brings the figure to 1e9 ≤ y < 1e10; the estimate may be one off. A figure of
+    // binary exponent e has about e·lg 2 decimal digits before the point (lg 2 ≈ 1233/4096).
+    let exponent = (size.to_bits() >> 52) as i32 - 1023;
+    let mut p = (9 - ((exponent * 1233) >> 12)).clamp(1, 22) as usize;
     let mut y = size * POWERS[p];
     if y >= 1e10 {
         p -= 1;

@@ -5,7 +5,6 @@
 //! choice is at least as much as *one* of them in every figure.
 
 use crate::grove::Share;
-use std::collections::BTreeMap;
 
 /// More shares than this are joined into coarser ones.
 const USUAL: usize = 48;
@@ -29,25 +28,15 @@ impl Rest {
                 .then_with(|| a.current_a.total_cmp(&b.current_a))
                 .then_with(|| a.stress.total_cmp(&b.stress))
         });
-        let mut stairs: BTreeMap<u64, f64> = BTreeMap::new();
-        let mut least = Vec::new();
+        // What is kept costs no more than what comes, so only current and stress can tell. Few are
+        // kept, and the first of them beat most of what comes.
+        let mut least: Vec<Share> = Vec::new();
         for share in shares {
-            let current = in_order(share.current_a);
-            let beaten =
-                stairs.range(..=current).next_back().is_some_and(|(_, s)| *s <= share.stress);
-            if beaten {
-                continue;
+            let beats =
+                |kept: &Share| kept.current_a <= share.current_a && kept.stress <= share.stress;
+            if !least.iter().any(beats) {
+                least.push(share);
             }
-            let covered: Vec<u64> = stairs
-                .range(current..)
-                .take_while(|(_, stress)| **stress >= share.stress)
-                .map(|(current, _)| *current)
-                .collect();
-            for step in covered {
-                stairs.remove(&step);
-            }
-            stairs.insert(current, share.stress);
-            least.push(share);
         }
         while least.len() > most {
             least = least.chunks(2).map(joined).collect();
@@ -63,12 +52,6 @@ impl Rest {
     pub fn shares(&self) -> &[Share] {
         &self.0
     }
-}
-
-/// Whole numbers that order as the figures do, negative ones too.
-fn in_order(x: f64) -> u64 {
-    let bits = x.to_bits();
-    if x.is_sign_negative() { !bits } else { bits | 1 << 63 }
 }
 
 /// A share that is at most each of these in every figure.
