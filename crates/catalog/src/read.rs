@@ -18,6 +18,10 @@
 //! | `notices-cut`, `rows-skipped` | how many more there are; how many rows were left out |
 //! | `value-implausible`, `column-gaps` | warnings of [`crate::plausible`] |
 
+mod inline;
+
+pub use inline::{InlineFault, read_inline};
+
 use crate::cells::{Cells, Noted};
 use crate::duplicates::{name_hash, refuse_duplicates};
 use crate::fault::{Fault, RowPlace, What};

@@ -1,7 +1,10 @@
 //! The commands, one module each: its arguments, its help, and what it does.
 
 mod catalog_check;
+mod catalog_gaps;
 mod shortlist;
+mod verify;
+mod whynot;
 
 use crate::arguments::Showing;
 use crate::files::FileFault;
@@ -19,6 +22,8 @@ pub(crate) struct Cli {
 #[derive(Debug, Subcommand)]
 enum Command {
     Shortlist(shortlist::Arguments),
+    Verify(verify::Arguments),
+    Whynot(whynot::Arguments),
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
@@ -27,6 +32,7 @@ enum Command {
 #[derive(Debug, Subcommand)]
 enum CatalogCommand {
     Check(catalog_check::Arguments),
+    Gaps(catalog_gaps::Arguments),
 }
 
 /// What a command found; the exit status follows from it.
@@ -74,7 +80,10 @@ impl Cli {
     pub(crate) fn showing(&self) -> Showing {
         match &self.command {
             Command::Shortlist(arguments) => arguments.showing,
+            Command::Verify(arguments) => arguments.showing,
+            Command::Whynot(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
+            Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
         }
     }
 }
@@ -83,8 +92,11 @@ impl Cli {
 pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
     match cli.command {
         Command::Shortlist(arguments) => shortlist::run(&arguments, screen),
+        Command::Verify(arguments) => verify::run(&arguments, screen),
+        Command::Whynot(arguments) => whynot::run(&arguments, screen),
         Command::Catalog(CatalogCommand::Check(arguments)) => {
             catalog_check::run(&arguments, screen)
         }
+        Command::Catalog(CatalogCommand::Gaps(arguments)) => catalog_gaps::run(&arguments, screen),
     }
 }

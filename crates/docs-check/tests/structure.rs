@@ -86,7 +86,9 @@ fn crates_keep_the_promises_of_their_does_not_sentences() {
         ("catalog", vec![&PRINTING[..]]),
         ("sheet", vec![&PRINTING[..], &FILES, &THREADS]),
         ("select", vec![&PRINTING[..], &FILES]),
-        ("eligible", vec![&PRINTING[..], &FILES, &THREADS]),
+        ("eligible", vec![&PRINTING[..], &FILES]),
+        ("design", vec![&PRINTING[..], &FILES, &THREADS]),
+        ("reasons", vec![&PRINTING[..], &FILES]),
         ("report", vec![&PRINTING[..], &THREADS]),
     ]);
     for (name, promise) in promises {

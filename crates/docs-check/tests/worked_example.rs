@@ -6,7 +6,7 @@ use docs_check::page::Page;
 use docs_check::root;
 use quantity::digits::compare;
 use select::problem::Weights;
-use select::ranking::score;
+use select::score::score;
 
 /// A row of the page's table.
 struct Row {

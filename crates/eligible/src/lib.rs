@@ -10,6 +10,7 @@ use catalog::{Catalog, Kind, Row, Shop, Sink, Status};
 use circuit::parts::{Amplifier, Heatsink, Pot, ResistorLine, Transistor, Zener};
 use circuit::slot::Slot;
 use names::Named;
+pub use names::kind_of;
 use notice::Notice;
 use rayon::prelude::*;
 use select::problem::{Part, PassPart, Problem, SinkPart, Weights};

@@ -8,6 +8,8 @@
 //! | [`terminal`] | it as a table with what was covered, assumed, left unchecked |
 //! | [`design`] | one candidate as a design file |
 //! | [`catalog_check`] | what a folder of catalogs holds and lacks |
+//! | [`proof`] | every check of a design, with formulas, numbers and sources |
+//! | [`mod@reasons`] | why nothing qualifies, why a part is not on the list, which blanks to fill |
 //! | [`notices`] | faults and doubts with the text at fault underlined |
 //! | [`remark`] | what no result checks, and cautions |
 //! | [`identity`] | a candidate's short id |
@@ -25,7 +27,9 @@ pub mod identity;
 pub mod json;
 pub mod look;
 pub mod notices;
+pub mod proof;
 pub mod ranking_csv;
+pub mod reasons;
 pub mod remark;
 pub mod shortlist;
 pub mod spreadsheet;

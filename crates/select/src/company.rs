@@ -3,8 +3,8 @@
 use crate::candidate::Candidate;
 use crate::grove::{Grove, Share};
 use crate::problem::Ground;
-use crate::ranking::score;
 use crate::rest::Rest;
+use crate::score::score;
 use crate::sides::amplifier::{AmplifierMark, AmplifierSide};
 use crate::sides::power::{Mount, PowerMark, PowerNode, PowerSide};
 use crate::sides::reference::{ReferenceFigures, ReferenceNode, ReferenceSide};

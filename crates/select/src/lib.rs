@@ -10,7 +10,8 @@
 //! | module | what it holds |
 //! |---|---|
 //! | [`problem`] | what may be chosen, at which price |
-//! | [`ranking`] | the order of candidates, and the search itself |
+//! | [`ranking`] | the list of the best candidates |
+//! | [`score`] | what they are ranked by |
 //! | [`front`] | candidates that nothing beats on cost, loss and stress at once |
 //! | [`count`] | exact counts of what is feasible and what is lost to which check |
 //! | [`candidate`] | a candidate with its values, and its proof |
@@ -27,7 +28,9 @@ mod limit;
 pub mod problem;
 pub mod ranking;
 mod rest;
+pub mod score;
 mod search;
 mod sides;
+mod spread;
 
 pub use limit::SearchError;

@@ -16,8 +16,8 @@ use crate::company::{ROOT, Sides};
 use crate::grove::{Names, Node, Share};
 use crate::limit::{self, SearchError};
 use crate::problem::Ground;
-use crate::ranking::Spread;
 use crate::sides::{meet_power, meet_reference};
+use crate::spread::{NO_SPREAD, Spread};
 use circuit::slot::Slot;
 use quantity::digits::rounded;
 use std::cmp::Ordering;
@@ -328,7 +328,7 @@ impl<'g, 'p> Search<'g, 'p> {
 
     /// Some part that all candidates of the triple share has as many rows as it may have.
     fn is_full(&self, triple: &Triple) -> bool {
-        if self.limits == crate::ranking::NO_SPREAD {
+        if self.limits == NO_SPREAD {
             return false;
         }
         self.decided(triple).any(|(slot, place)| {

@@ -1,0 +1,274 @@
+//! Every part of a problem at its rail, and what fails where parts meet.
+//!
+//! Resistor values are those that the circuit chooses, whatever checks are asked: a requirement that
+//! is dropped moves no value.
+
+use crate::check_set::Failing;
+use circuit::amplifier::AmplifierAtRail;
+use circuit::assembly::{Aim, Network, choose_divider, input_checks, supply_checks};
+use circuit::check::{Finding, Tally};
+use circuit::divider::{Divider, NO_VALUE_IN_WINDOW};
+use circuit::drive;
+use circuit::pass::{CaseTemperatures, Duty, Mounted, PassFigures, Unmounted};
+use circuit::rail::Rail;
+use circuit::reference::{Bias, Chosen, ZenerAtRail, chosen_rz};
+use circuit::resistor::{LineAtRail, PotAtRail};
+use circuit::slot::Slot;
+use rayon::prelude::*;
+use select::problem::Problem;
+use std::collections::HashMap;
+use std::ops::ControlFlow;
+
+/// By `Slot as usize`: the place of a part in the problem's list; None for no part.
+pub type Places = [Option<u32>; Slot::COUNT];
+
+/// A part in the problem's list for its slot, or none.
+pub(crate) fn at(places: &Places, slot: Slot) -> Option<usize> {
+    places[slot as usize].map(|place| place as usize)
+}
+
+/// A zener with the bias resistor that was chosen from a line.
+pub(crate) struct Biased {
+    pub zener: u32,
+    pub line: u32,
+    pub bias: Bias,
+    /// What fails of section 4.1.
+    pub failing: Failing,
+}
+
+/// A biased zener with the divider that was chosen from a line beside a pot.
+pub(crate) struct Reference<'c> {
+    pub biased: &'c Biased,
+    pub line: u32,
+    pub pot: Option<u32>,
+    /// None where no value of the line lies in the window.
+    divider: Option<Divider>,
+}
+
+/// The parts of a problem at its rail.
+pub(crate) struct Company<'a> {
+    pub problem: &'a Problem<'a>,
+    aim: Aim,
+    duty: Duty,
+    zeners: Vec<ZenerAtRail>,
+    bias_lines: Vec<LineAtRail>,
+    pub amplifiers: Vec<AmplifierAtRail>,
+    divider_lines: Vec<LineAtRail>,
+    pots: Vec<PotAtRail>,
+    pub passes: Vec<PassFigures>,
+    /// The case on each heatsink.
+    cases: Vec<CaseTemperatures>,
+    /// The heatsinks that take each package.
+    fitting: HashMap<&'a str, Vec<u32>>,
+}
+
+impl<'a> Company<'a> {
+    pub fn new(problem: &'a Problem<'a>) -> Self {
+        let rail = problem.rail;
+        let duty = Duty::new(rail);
+        let mut fitting: HashMap<&str, Vec<u32>> = HashMap::new();
+        for (place, sink) in (0u32..).zip(&problem.heatsinks) {
+            for &package in &sink.fits {
+                let sinks = fitting.entry(package).or_default();
+                if sinks.last() != Some(&place) {
+                    sinks.push(place);
+                }
+            }
+        }
+        Self {
+            problem,
+            aim: Aim::of(rail),
+            duty,
+            zeners: problem.zeners.iter().map(|z| ZenerAtRail::new(z.figures, rail)).collect(),
+            bias_lines: problem
+                .bias_lines
+                .iter()
+                .map(|l| LineAtRail::new(l.figures, rail))
+                .collect(),
+            amplifiers: problem
+                .amplifiers
+                .iter()
+                .map(|a| AmplifierAtRail::new(a.figures, rail))
+                .collect(),
+            divider_lines: problem
+                .divider_lines
+                .iter()
+                .map(|l| LineAtRail::new(l.figures, rail))
+                .collect(),
+            pots: problem.pots.iter().map(|p| PotAtRail::new(p.figures, rail)).collect(),
+            passes: problem
+                .transistors
+                .iter()
+                .map(|t| PassFigures::new(t.part.figures, &duty, rail))
+                .collect(),
+            cases: problem
+                .heatsinks
+                .iter()
+                .map(|s| CaseTemperatures::on_heatsink(s.part.figures, &duty, rail))
+                .collect(),
+            fitting,
+        }
+    }
+
+    pub fn rail(&self) -> &'a Rail {
+        self.problem.rail
+    }
+
+    /// How many reference sides there are.
+    pub fn references(&self) -> u64 {
+        let pots = if self.rail().is_adjustable() { self.pots.len() } else { 1 };
+        [self.zeners.len(), self.bias_lines.len(), self.divider_lines.len(), pots]
+            .into_iter()
+            .fold(1u64, |product, n| product.saturating_mul(n as u64))
+    }
+
+    /// Every zener on every bias line, in the order of the lists.
+    pub fn biased(&self) -> Vec<Biased> {
+        let rail = self.rail();
+        let on_line = |(zener, z): (u32, &ZenerAtRail)| -> Vec<Biased> {
+            let lines = (0u32..).zip(&self.bias_lines);
+            lines
+                .filter_map(|(line, l)| {
+                    let bias = match chosen_rz(z, l, rail)? {
+                        Chosen::Holds(bias, _) | Chosen::Fails(bias, _) => bias,
+                    };
+                    let failing = Failing::among(|t| z.checks(&bias, l, t));
+                    Some(Biased { zener, line, bias, failing })
+                })
+                .collect()
+        };
+        let zeners: Vec<(u32, &ZenerAtRail)> = (0u32..).zip(&self.zeners).collect();
+        let by_zener: Vec<Vec<Biased>> = zeners.into_par_iter().map(on_line).collect();
+        by_zener.into_iter().flatten().collect()
+    }
+
+    /// The divider lines with the pots that may stand beside them.
+    pub fn dividers(&self) -> impl Iterator<Item = (u32, Option<u32>)> {
+        let pots: Vec<Option<u32>> = if self.rail().is_adjustable() {
+            (0u32..).zip(&self.pots).map(|(p, _)| Some(p)).collect()
+        } else {
+            vec![None]
+        };
+        (0u32..)
+            .zip(&self.divider_lines)
+            .flat_map(move |(line, _)| pots.clone().into_iter().map(move |pot| (line, pot)))
+    }
+
+    pub fn reference<'c>(
+        &self,
+        biased: &'c Biased,
+        line: u32,
+        pot: Option<u32>,
+    ) -> Option<Reference<'c>> {
+        let at_rail = self.divider_lines.get(line as usize)?;
+        let pot_at_rail = pot.and_then(|p| self.pots.get(p as usize));
+        let choice = choose_divider(&self.aim, &biased.bias, at_rail, pot_at_rail, self.rail());
+        Some(Reference { biased, line, pot, divider: choice.divider() })
+    }
+
+    /// The checks in which an amplifier meets a reference side.
+    fn input_checks(
+        &self,
+        reference: &Reference<'_>,
+        amp: &AmplifierAtRail,
+        tally: &mut impl Tally,
+    ) -> ControlFlow<()> {
+        let bias = &reference.biased.bias;
+        let line = self.divider_lines.get(reference.line as usize);
+        match (reference.divider, line) {
+            (Some(divider), Some(line)) => {
+                let pot = reference.pot.and_then(|p| self.pots.get(p as usize));
+                let network = Network { line, divider, pot };
+                input_checks(amp, bias, &network, &self.aim, self.rail(), tally)
+            }
+            _ => {
+                tally.take(amp.amp_input_low(bias.vz_lo_v))?;
+                tally.take(amp.amp_input_high(bias.vz_hi_v, self.rail()))?;
+                tally.take(NO_VALUE_IN_WINDOW)
+            }
+        }
+    }
+
+    /// What fails where an amplifier meets a reference side.
+    pub fn input_failing(&self, reference: &Reference<'_>, amp: &AmplifierAtRail) -> Failing {
+        Failing::among(|t| self.input_checks(reference, amp, t))
+    }
+
+    pub fn supply_failing(&self, amp: &AmplifierAtRail) -> Failing {
+        Failing::among(|t| supply_checks(amp, self.rail(), t))
+    }
+
+    pub fn drive_failing(&self, amp: &AmplifierAtRail, pass: &PassFigures) -> Failing {
+        Failing::among(|t| drive::checks(amp, pass, self.rail(), t))
+    }
+
+    /// Every way in which a transistor may be mounted, each with its heatsink.
+    pub fn mountings(&self, transistor: usize) -> Vec<(Option<u32>, Mounted)> {
+        let (Some(part), Some(figures)) =
+            (self.problem.transistors.get(transistor), self.passes.get(transistor))
+        else {
+            return Vec::new();
+        };
+        let (rail, duty) = (self.rail(), &self.duty);
+        if let Some(case) = CaseTemperatures::on_own_sink(duty, rail) {
+            return vec![(None, Mounted::on(case, figures, duty))];
+        }
+        let mut mountings = Vec::new();
+        if self.problem.can_go_unmounted(part.part.figures) {
+            let unmounted = Unmounted::new(part.part.figures, duty, rail);
+            mountings.extend(unmounted.map(|u| (None, u.into())));
+        }
+        let sinks = part.package.and_then(|package| self.fitting.get(package));
+        for &sink in sinks.into_iter().flatten() {
+            if let Some(case) = self.cases.get(sink as usize) {
+                mountings.push((Some(sink), Mounted::on(*case, figures, duty)));
+            }
+        }
+        mountings
+    }
+
+    pub fn mounted_failing(&self, pass: &PassFigures, mounted: &Mounted) -> Failing {
+        Failing::among(|t| pass.checks(mounted, &self.duty, self.rail(), t))
+    }
+
+    /// Every check of a combination, in page order. None where the places are not of this problem, or
+    /// the transistor can't be mounted so.
+    pub fn findings(&self, places: &Places) -> Option<Vec<Finding>> {
+        let index = |slot| at(places, slot);
+        let zener = self.zeners.get(index(Slot::Zener)?)?;
+        let bias_line = self.bias_lines.get(index(Slot::BiasLine)?)?;
+        let bias = match chosen_rz(zener, bias_line, self.rail())? {
+            Chosen::Holds(bias, _) | Chosen::Fails(bias, _) => bias,
+        };
+        let biased = Biased { zener: 0, line: 0, bias, failing: Failing::default() };
+        let line = places[Slot::DividerLine as usize]?;
+        let reference = self.reference(&biased, line, places[Slot::Pot as usize])?;
+        let amp = self.amplifiers.get(index(Slot::Amplifier)?)?;
+        let transistor = index(Slot::Pass)?;
+        let pass = self.passes.get(transistor)?;
+        let sink = places[Slot::Heatsink as usize];
+        let mountings = self.mountings(transistor);
+        let (_, mounted) = mountings.iter().find(|(s, _)| *s == sink)?;
+        let mut findings = Vec::new();
+        // A list of findings never ends the asking.
+        let _ = zener.checks(&bias, bias_line, &mut findings);
+        let _ = supply_checks(amp, self.rail(), &mut findings);
+        let _ = self.input_checks(&reference, amp, &mut findings);
+        let _ = pass.checks(mounted, &self.duty, self.rail(), &mut findings);
+        let _ = drive::checks(amp, pass, self.rail(), &mut findings);
+        Some(findings)
+    }
+}
+
+/// An amplifier that meets no reference side worse than any of these does: each figure that counts
+/// there is the best of all.
+pub(crate) fn best_at_input(amplifiers: &[AmplifierAtRail]) -> Option<AmplifierAtRail> {
+    amplifiers.iter().copied().reduce(|mut best, amp| {
+        best.part.vcm_low_v = best.part.vcm_low_v.min(amp.part.vcm_low_v);
+        best.part.vcm_high_v = best.part.vcm_high_v.min(amp.part.vcm_high_v);
+        best.part.ib_max_a = best.part.ib_max_a.min(amp.part.ib_max_a);
+        best.fixed_error_v = best.fixed_error_v.min(amp.fixed_error_v);
+        best.common_mode = best.common_mode.min(amp.common_mode);
+        best
+    })
+}
