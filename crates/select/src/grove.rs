@@ -1,7 +1,7 @@
 //! A side of the circuit as a tree of choices that grows where the search looks.
 
 use crate::limit::make_room;
-use crate::rest::Rest;
+use crate::rest::keep_few;
 use circuit::slot::Slot;
 use std::ops::Range;
 
@@ -73,12 +73,13 @@ impl Shares {
         &self.few[..self.count]
     }
 
-    /// From the shares of all parts of a node.
-    fn of(parts: impl Iterator<Item = Share>) -> Self {
-        let rest = Rest::of_at_most(parts.filter(|share| !share.is_impossible()), FEW);
+    /// From the shares of all parts of a node, which are used up.
+    fn of(parts: &mut Vec<Share>) -> Self {
+        parts.retain(|share| !share.is_impossible());
+        keep_few(parts, FEW);
         let mut few = [Share::MORE_THAN_ANY; FEW];
-        few.iter_mut().zip(rest.shares()).for_each(|(place, share)| *place = *share);
-        Self { few, count: rest.shares().len() }
+        few.iter_mut().zip(parts.iter()).for_each(|(place, share)| *place = *share);
+        Self { few, count: parts.len() }
     }
 }
 
@@ -159,6 +160,8 @@ pub(crate) struct Grove<G: Growth> {
     nodes: Vec<Node<G::Figures, G::Mark>>,
     links: Vec<Links>,
     scratch: Vec<Node<G::Figures, G::Mark>>,
+    /// Room for the shares of a node's parts, used again and again.
+    of_parts: Vec<Share>,
 }
 
 /// How a node hangs together with others.
@@ -172,7 +175,13 @@ struct Links {
 
 impl<G: Growth> Grove<G> {
     pub fn new(growth: G) -> Self {
-        Self { growth, nodes: Vec::new(), links: Vec::new(), scratch: Vec::new() }
+        Self {
+            growth,
+            nodes: Vec::new(),
+            links: Vec::new(),
+            scratch: Vec::new(),
+            of_parts: Vec::new(),
+        }
     }
 
     pub fn root(&mut self) -> Option<u32> {
@@ -234,16 +243,22 @@ impl<G: Growth> Grove<G> {
     fn raise(&mut self, id: u32) {
         let mut next = Some(id);
         while let Some(id) = next {
-            let Links { parent, children, shares: before } = self.links[id as usize].clone();
-            let Some(children) = children else { return };
+            let links = &self.links[id as usize];
+            let (parent, Some(children)) = (links.parent, links.children.clone()) else { return };
             let mut least = Share::MORE_THAN_ANY;
-            for part in &self.nodes[children.start as usize..children.end as usize] {
-                least.least(&part.share);
+            let mut of_parts = std::mem::take(&mut self.of_parts);
+            of_parts.clear();
+            for part in children {
+                least.least(&self.nodes[part as usize].share);
+                of_parts.extend_from_slice(self.shares(part));
             }
-            let shares = Shares::of(children.flat_map(|part| self.shares(part).iter().copied()));
+            let shares = Shares::of(&mut of_parts);
+            self.of_parts = of_parts;
+            let before = self.links[id as usize].shares.as_deref();
+            let unchanged = before == Some(&shares);
             let share = &mut self.nodes[id as usize].share;
             let raised = share.raised_to(&least);
-            if raised == *share && before.as_deref() == Some(&shares) {
+            if raised == *share && unchanged {
                 return;
             }
             *share = raised;

@@ -22,26 +22,8 @@ impl Rest {
     /// The same with at most so many shares kept apart: the more, the closer the bound.
     pub fn of_at_most(shares: impl Iterator<Item = Share>, most: usize) -> Self {
         let mut shares: Vec<Share> = shares.collect();
-        shares.sort_unstable_by(|a, b| {
-            a.cost
-                .total_cmp(&b.cost)
-                .then_with(|| a.current_a.total_cmp(&b.current_a))
-                .then_with(|| a.stress.total_cmp(&b.stress))
-        });
-        // What is kept costs no more than what comes, so only current and stress can tell. Few are
-        // kept, and the first of them beat most of what comes.
-        let mut least: Vec<Share> = Vec::new();
-        for share in shares {
-            let beats =
-                |kept: &Share| kept.current_a <= share.current_a && kept.stress <= share.stress;
-            if !least.iter().any(beats) {
-                least.push(share);
-            }
-        }
-        while least.len() > most {
-            least = least.chunks(2).map(joined).collect();
-        }
-        Self(least)
+        keep_few(&mut shares, most);
+        Self(shares)
     }
 
     /// Of two sides together.
@@ -54,11 +36,35 @@ impl Rest {
     }
 }
 
-/// A share that is at most each of these in every figure.
-fn joined(shares: &[Share]) -> Share {
-    let mut least = shares[0];
-    for share in shares {
-        least.least(share);
+/// Leaves at most so many shares such that each of those given is at least one of them in every figure.
+pub(crate) fn keep_few(shares: &mut Vec<Share>, most: usize) {
+    shares.sort_unstable_by(|a, b| {
+        a.cost
+            .total_cmp(&b.cost)
+            .then_with(|| a.current_a.total_cmp(&b.current_a))
+            .then_with(|| a.stress.total_cmp(&b.stress))
+    });
+    // What is kept costs no more than what comes, so only current and stress can tell. Few are kept,
+    // and the first of them beat most of what comes.
+    let mut kept = 0;
+    for place in 0..shares.len() {
+        let share = shares[place];
+        let beats = |k: &Share| k.current_a <= share.current_a && k.stress <= share.stress;
+        if !shares[..kept].iter().any(beats) {
+            shares[kept] = share;
+            kept += 1;
+        }
     }
-    least
+    shares.truncate(kept);
+    while shares.len() > most {
+        let pairs = shares.len().div_ceil(2);
+        for pair in 0..pairs {
+            let mut joined = shares[2 * pair];
+            if let Some(other) = shares.get(2 * pair + 1).copied() {
+                joined.least(&other);
+            }
+            shares[pair] = joined;
+        }
+        shares.truncate(pairs);
+    }
 }

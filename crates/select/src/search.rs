@@ -16,8 +16,10 @@ use crate::company::{ROOT, Sides};
 use crate::grove::{Names, Node, Share};
 use crate::limit::{self, SearchError};
 use crate::problem::Ground;
+use crate::score::score;
 use crate::sides::{meet_power, meet_reference};
 use crate::spread::{NO_SPREAD, Spread};
+use circuit::merit;
 use circuit::slot::Slot;
 use quantity::digits::rounded;
 use std::cmp::Ordering;
@@ -266,23 +268,28 @@ impl<'g, 'p> Search<'g, 'p> {
         let names = Slot::BY_NAME
             .map(|slot| [r.names, a.names, p.names].iter().map(|n| n[slot as usize]).sum());
         let mut least: Option<(f64, Key)> = None;
-        for power in self.sides.powers.shares(triple.power) {
-            for other in others {
-                let merits = self.sides.merits([other, &known, power], meeting);
+        for other in others {
+            let beside = other.beside(&known);
+            // Power sides draw nothing beside the load, so the loss is the same for all of them.
+            let loss = merit::loss(self.ground.rail(), beside.current_a);
+            for power in self.sides.powers.shares(triple.power) {
+                let cost = beside.cost + power.cost;
+                let stress = beside.stress.max(power.stress).max(meeting);
+                let score = score(&self.ground.problem.weights, cost, loss, stress);
                 // Far behind, so that rounding can't bring it to the front.
-                if least.is_some_and(|(score, _)| merits.score > score * (1.0 + 1e-8)) {
+                if least.is_some_and(|(so_far, _)| score > so_far * (1.0 + 1e-8)) {
                     continue;
                 }
                 let key = Key {
-                    score: rounded(merits.score * lowered),
-                    cost: rounded(merits.cost * lowered),
-                    stress: rounded(merits.stress),
-                    loss: rounded(merits.loss * lowered),
+                    score: rounded(score * lowered),
+                    cost: rounded(cost * lowered),
+                    stress: rounded(stress),
+                    loss: rounded(loss * lowered),
                     names,
                 };
                 if least.is_none_or(|(_, so_far)| key < so_far) {
-                    let score = least.map_or(merits.score, |(score, _)| score.min(merits.score));
-                    least = Some((score, key));
+                    let lesser = least.map_or(score, |(so_far, _)| so_far.min(score));
+                    least = Some((lesser, key));
                 }
             }
         }

@@ -104,9 +104,10 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     if let (Some(loaded), Some(criterion)) = (&mut loaded, arguments.by) {
         rank_by(criterion, &mut loaded.sheet);
     }
-    let eligible = loaded.as_ref().and_then(|loaded| loaded.eligible(&mut notices));
+    let loaded = loaded.map(Loaded::for_good);
+    let eligible = loaded.and_then(|loaded| loaded.eligible(&mut notices));
     screen.tell(&notices, Warnings::FewOfAKind);
-    let (Some(loaded), Some(eligible)) = (&loaded, eligible) else { return Err(Fault::Told) };
+    let (Some(loaded), Some(eligible)) = (loaded, eligible) else { return Err(Fault::Told) };
 
     let problem = eligible.problem();
     let candidates = found(arguments, &problem, screen)?;
