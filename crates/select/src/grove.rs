@@ -146,6 +146,12 @@ pub(crate) trait Growth {
         children: &mut Vec<Node<Self::Figures, Self::Mark>>,
     );
 
+    /// A few shares that bound a node closer than its own share does, where the side knows them
+    /// before the node is taken apart; none where it does not.
+    fn closer(&self, _node: &Node<Self::Figures, Self::Mark>) -> Vec<Share> {
+        Vec::new()
+    }
+
     /// Memory in use, bytes.
     fn memory(&self) -> usize;
 }
@@ -215,8 +221,11 @@ impl<G: Growth> Grove<G> {
         make_room(&mut self.nodes, self.scratch.len());
         make_room(&mut self.links, self.scratch.len());
         self.nodes.append(&mut self.scratch);
-        let alone = Links { parent: Some(id), children: None, shares: None };
-        self.links.resize(self.nodes.len(), alone);
+        for node in &self.nodes[from as usize..] {
+            let mut closer = self.growth.closer(node);
+            let shares = (!closer.is_empty()).then(|| Box::new(Shares::of(&mut closer)));
+            self.links.push(Links { parent: Some(id), children: None, shares });
+        }
         let range = from..self.nodes.len() as u32;
         self.links[id as usize].children = Some(range.clone());
         self.raise(id);

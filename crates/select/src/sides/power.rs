@@ -162,7 +162,35 @@ pub(crate) struct PowerSide<'g, 'p> {
     boxes: Boxes<PassItem>,
     /// The heatsinks of each package class.
     sinks: Vec<Boxes<SinkItem>>,
+    /// The same in a few groups from cheap and hot to dear and cool, with the best of each.
+    groups: Vec<Vec<BestSink>>,
     own_sink: Option<CaseTemperatures>,
+}
+
+/// How many groups a class of heatsinks is put into.
+const GROUPS: usize = 5;
+
+/// The heatsinks of a class in a few groups by price. Those that another beats in price and
+/// temperatures are left out: what holds for the other's group bounds them too.
+fn groups(sinks: &Boxes<SinkItem>) -> Vec<BestSink> {
+    let mut best: Vec<BestSink> = sinks.items().iter().map(Item::best).collect();
+    best.sort_by(|a, b| a.price.total_cmp(&b.price));
+    let mut unbeaten: Vec<BestSink> = Vec::new();
+    for sink in best {
+        let beaten = unbeaten.iter().any(|other| {
+            other.case.service_c <= sink.case.service_c && other.case.fault_c <= sink.case.fault_c
+        });
+        if !beaten {
+            unbeaten.push(sink);
+        }
+    }
+    let size = unbeaten.len().div_ceil(GROUPS).max(1);
+    let joined = |group: &[BestSink]| {
+        let mut best = group[0];
+        group.iter().for_each(|sink| SinkItem::widen(&mut best, sink));
+        best
+    };
+    unbeaten.chunks(size).map(joined).collect()
 }
 
 impl<'g, 'p> PowerSide<'g, 'p> {
@@ -236,7 +264,8 @@ impl<'g, 'p> PowerSide<'g, 'p> {
                 })
             })
             .collect();
-        Self { ground, boxes: Boxes::new(items), sinks, own_sink }
+        let groups = sinks.iter().map(groups).collect();
+        Self { ground, boxes: Boxes::new(items), sinks, groups, own_sink }
     }
 
     fn box_node(&self, id: u32) -> PowerNode {
@@ -364,6 +393,34 @@ impl Growth for PowerSide<'_, '_> {
             PowerMark::Sinks(item, class, id) => self.sink_pieces(item, class, id, children),
             PowerMark::Done(..) => {}
         }
+    }
+
+    /// Of a transistor: what it adds on each group of its heatsinks, and unmounted.
+    fn closer(&self, node: &PowerNode) -> Vec<Share> {
+        let PowerMark::Pass(item) = node.mark else { return Vec::new() };
+        let PassItem { index, figures, .. } = &self.boxes.items()[item as usize];
+        if self.own_sink.is_some() {
+            return Vec::new();
+        }
+        let (ground, duty) = (self.ground, &self.ground.duty);
+        let transistor = &ground.problem.transistors[*index as usize].part;
+        let share = |mounted: Mounted, price: f64| {
+            let stress =
+                WhileHolding::over(|t| figures.checks(&mounted, duty, ground.rail(), t)).ok()?;
+            Some(Share { cost: transistor.price + price, current_a: 0.0, stress })
+        };
+        let unmounted = ground
+            .problem
+            .can_go_unmounted(transistor.figures)
+            .then(|| Unmounted::new(transistor.figures, duty, ground.rail()))
+            .flatten()
+            .and_then(|unmounted| share(unmounted.into(), 0.0));
+        let groups = ground.classes.of(*index as usize).map(|class| &self.groups[class as usize]);
+        let on_sinks = groups
+            .into_iter()
+            .flatten()
+            .filter_map(|sink| share(Mounted::on(sink.case, figures, duty), sink.price));
+        unmounted.into_iter().chain(on_sinks).collect()
     }
 
     fn memory(&self) -> usize {
