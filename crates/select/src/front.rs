@@ -177,29 +177,6 @@ struct Found {
     candidate: Candidate,
 }
 
-/// What reference and power sides add at least, together.
-struct Company {
-    rest: Rest,
-    nodes: usize,
-}
-
-impl Company {
-    fn new(sides: &mut Sides<'_, '_>) -> Self {
-        sides.learn();
-        let powers = Rest::of(sides.powers.frontier());
-        let nodes = sides.references.count() + sides.powers.count();
-        Self { rest: sides.rest.references.with(&powers), nodes }
-    }
-
-    /// Takes in what has become known, where that is worth while.
-    fn renew(&mut self, sides: &mut Sides<'_, '_>) {
-        let nodes = sides.references.count() + sides.powers.count();
-        if nodes > self.nodes + self.nodes / 4 {
-            *self = Self::new(sides);
-        }
-    }
-}
-
 struct Survey<'g, 'p> {
     ground: &'g Ground<'p>,
     sides: Sides<'g, 'p>,
@@ -213,22 +190,21 @@ impl Survey<'_, '_> {
         if self.sides.roots().is_none() {
             return Ok(());
         }
-        let mut company = Company::new(&mut self.sides);
+        let company = self.best_company()?;
         let mut waiting = BinaryHeap::new();
-        waiting.extend(self.promise(ROOT, &company.rest).map(Reverse));
+        waiting.extend(self.promise(ROOT, &company).map(Reverse));
         while let Some(Reverse(Promising { least, node })) = waiting.pop() {
             // More may be found since, and more known of the references.
-            let Some(now) = self.promise(node, &company.rest) else { continue };
+            let Some(now) = self.promise(node, &company) else { continue };
             if now.least > least {
                 waiting.push(Reverse(now));
                 continue;
             }
             if let AmplifierMark::One(_) = self.sides.amplifiers.get(node).mark {
                 self.pair_off(node)?;
-                company.renew(&mut self.sides);
             } else {
                 for part in self.sides.amplifier_parts(node) {
-                    waiting.extend(self.promise(part, &company.rest).map(Reverse));
+                    waiting.extend(self.promise(part, &company).map(Reverse));
                 }
             }
             self.check_memory(waiting.len())?;
@@ -239,6 +215,19 @@ impl Survey<'_, '_> {
     fn check_memory(&self, waiting: usize) -> Result<(), SearchError> {
         let in_use = waiting * size_of::<Waiting>() + self.sides.memory();
         limit::check(in_use, waiting)
+    }
+
+    /// What reference and power sides together add at least beside any amplifier: the pairs of those
+    /// that nothing beats beside the best figures of all amplifiers. Whatever suits one amplifier suits
+    /// those figures, with no more stress, so one of the pairs is at least as good.
+    fn best_company(&mut self) -> Result<Rest, SearchError> {
+        /// So many pairs are kept apart: an amplifier costs much more to look into than to bound.
+        const MOST: usize = 512;
+        let powers = self.powers_beside(ROOT)?;
+        let least = powers.iter().map(|p| p.share.stress).fold(f64::INFINITY, f64::min);
+        let references = self.references_beside(ROOT, least)?;
+        let pairs = references.iter().flat_map(|r| powers.iter().map(|p| r.share.beside(&p.share)));
+        Ok(Rest::of_at_most(pairs, MOST))
     }
 
     /// What an amplifier node could do at best; None where all of it is beaten.
