@@ -25,6 +25,8 @@ use circuit::slot::Slot;
 use quantity::digits::{compare, rounded};
 use std::cmp::{Ordering, Reverse};
 use std::collections::BinaryHeap;
+use std::ops::RangeInclusive;
+use std::rc::Rc;
 
 /// The front in rank order. Of several candidates with equal figures the first by name stays.
 ///
@@ -150,6 +152,7 @@ impl Eq for Waiting {}
 struct Promising {
     least: f64,
     node: u32,
+    company: Rc<Rest>,
 }
 
 impl Ord for Promising {
@@ -172,6 +175,9 @@ impl PartialEq for Promising {
 
 impl Eq for Promising {}
 
+/// A box of so many amplifiers is given a company of its own: once on the way down to each.
+const CLOSER_LOOK: RangeInclusive<u32> = 24..=47;
+
 struct Found {
     figures: Figures,
     candidate: Candidate,
@@ -190,11 +196,11 @@ impl Survey<'_, '_> {
         if self.sides.roots().is_none() {
             return Ok(());
         }
-        let company = self.best_company()?;
+        let company = self.best_company(ROOT)?;
         let mut waiting = BinaryHeap::new();
         waiting.extend(self.promise(ROOT, &company).map(Reverse));
-        while let Some(Reverse(Promising { least, node })) = waiting.pop() {
-            // More may be found since, and more known of the references.
+        while let Some(Reverse(Promising { least, node, company })) = waiting.pop() {
+            // More may be found since.
             let Some(now) = self.promise(node, &company) else { continue };
             if now.least > least {
                 waiting.push(Reverse(now));
@@ -203,6 +209,9 @@ impl Survey<'_, '_> {
             if let AmplifierMark::One(_) = self.sides.amplifiers.get(node).mark {
                 self.pair_off(node)?;
             } else {
+                let size = self.sides.amplifiers.get(node).size;
+                let company =
+                    if CLOSER_LOOK.contains(&size) { self.best_company(node)? } else { company };
                 for part in self.sides.amplifier_parts(node) {
                     waiting.extend(self.promise(part, &company).map(Reverse));
                 }
@@ -217,21 +226,21 @@ impl Survey<'_, '_> {
         limit::check(in_use, waiting)
     }
 
-    /// What reference and power sides together add at least beside any amplifier: the pairs of those
-    /// that nothing beats beside the best figures of all amplifiers. Whatever suits one amplifier suits
+    /// What reference and power sides together add at least beside any amplifier of a node: the pairs of
+    /// those that nothing beats beside the best figures of the node. Whatever suits one amplifier suits
     /// those figures, with no more stress, so one of the pairs is at least as good.
-    fn best_company(&mut self) -> Result<Rest, SearchError> {
+    fn best_company(&mut self, node: u32) -> Result<Rc<Rest>, SearchError> {
         /// So many pairs are kept apart: an amplifier costs much more to look into than to bound.
         const MOST: usize = 512;
-        let powers = self.powers_beside(ROOT)?;
+        let powers = self.powers_beside(node)?;
         let least = powers.iter().map(|p| p.share.stress).fold(f64::INFINITY, f64::min);
-        let references = self.references_beside(ROOT, least)?;
+        let references = self.references_beside(node, least)?;
         let pairs = references.iter().flat_map(|r| powers.iter().map(|p| r.share.beside(&p.share)));
-        Ok(Rest::of_at_most(pairs, MOST))
+        Ok(Rc::new(Rest::of_at_most(pairs, MOST)))
     }
 
     /// What an amplifier node could do at best; None where all of it is beaten.
-    fn promise(&self, node: u32, company: &Rest) -> Option<Promising> {
+    fn promise(&self, node: u32, company: &Rc<Rest>) -> Option<Promising> {
         let amplifier = self.sides.amplifiers.get(node);
         let root = self.sides.references.get(ROOT);
         let power = self.sides.powers.get(ROOT);
@@ -249,7 +258,7 @@ impl Survey<'_, '_> {
                 least = Some(least.map_or(score, |l| l.min(score)));
             }
         }
-        least.map(|least| Promising { least, node })
+        least.map(|least| Promising { least, node, company: Rc::clone(company) })
     }
 
     fn figures(&self, share: &Share, names: Names) -> Figures {
