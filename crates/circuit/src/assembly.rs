@@ -284,11 +284,11 @@ impl Assembly<'_> {
     pub fn output(&self) -> OutputFigures {
         let input = self.input_error();
         let Network { divider, pot, .. } = &self.network;
-        match pot {
-            Some(pot) => {
+        match (Aim::of(self.rail), pot) {
+            (Aim::Adjustable(_), Some(pot)) => {
                 OutputFigures::Adjustable(adjustable::output(&self.bias, divider, pot, input))
             }
-            None => OutputFigures::Fixed(fixed::output(&self.bias, divider, input)),
+            _ => OutputFigures::Fixed(fixed::output(&self.bias, divider, input)),
         }
     }
 

@@ -177,6 +177,7 @@ impl Finding {
     /// assert_eq!(f(1.0, 4.0).utilisation(), 0.25);
     /// assert_eq!(f(0.0, -1.0).utilisation(), 0.0);
     /// assert_eq!(f(1.0, 0.0).utilisation(), f64::INFINITY);
+    /// assert_eq!(f(1.0, f64::NAN).utilisation(), f64::INFINITY);
     /// ```
     #[inline]
     pub fn utilisation(&self) -> f64 {
@@ -185,7 +186,9 @@ impl Finding {
         } else if self.allowed <= 0.0 || self.asked == f64::INFINITY {
             f64::INFINITY
         } else {
-            self.asked / self.allowed
+            let u = self.asked / self.allowed;
+            // A figure that went wrong holds nothing.
+            if u.is_nan() { f64::INFINITY } else { u }
         }
     }
 
