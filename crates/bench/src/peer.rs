@@ -246,7 +246,7 @@ fn write_powers(problem: &Problem<'_>, folder: &Path) -> Result<(), csv::Error> 
                 sink,
                 (part.price + sink_price).to_string(),
                 stress.to_string(),
-                figures.base_current_a().to_string(),
+                figures.base.most_a.to_string(),
                 figures.drive_power_w.to_string(),
                 figures.vbe_hi_v.to_string(),
                 figures.junctions.to_string(),

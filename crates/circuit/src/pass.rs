@@ -430,12 +430,6 @@ impl PassFigures {
         tally.take(self.dropout(rail))?;
         Continue(())
     }
-
-    /// IE/(amp_current·iout) − 1 is the least gain that an amplifier needs here; this is its part
-    /// that the transistor decides, the base current that is asked, A.
-    pub fn base_current_a(&self) -> f64 {
-        self.base.most_a
-    }
 }
 
 /// d(T) for a junction limit.

@@ -7,7 +7,7 @@
 mod names;
 
 use catalog::{Catalog, Kind, Row, Shop, Sink, Status};
-use circuit::parts::{Amplifier, Heatsink, Pot, ResistorLine, Transistor, Zener};
+use circuit::parts::{Amplifier, Pot, ResistorLine, Transistor, Zener};
 use circuit::slot::Slot;
 use names::Named;
 pub use names::kind_of;
@@ -293,9 +293,4 @@ fn parts<'a, F: Sync>(rows: &[&'a Row<F>], boards: u64) -> Vec<Part<'a, F>> {
         .enumerate()
         .map(|(place, row)| part(place as u32, row, &row.figures, boards))
         .collect()
-}
-
-/// A heatsink's figures as the circuit knows them.
-pub fn sink_figures(row: &Row<Sink>) -> &Heatsink {
-    &row.figures.figures
 }

@@ -15,6 +15,22 @@ impl CheckSet {
     pub const EMPTY: CheckSet = CheckSet(0);
     /// Every check of the model.
     pub const ALL: CheckSet = CheckSet::of(&Check::ALL);
+    /// The checks of the divider, of either form of output.
+    pub const DIVIDER: CheckSet = CheckSet::of(&[
+        Check::DividerWindow,
+        Check::OutputError,
+        Check::RfPower,
+        Check::ReachHigh,
+        Check::ReachLow,
+        Check::LowStop,
+        Check::Ceiling,
+        Check::RxPower,
+        Check::RiPower,
+        Check::RfVoltage,
+        Check::RxVoltage,
+        Check::PotPower,
+        Check::PotVoltage,
+    ]);
 
     /// These checks.
     pub const fn of(checks: &[Check]) -> Self {

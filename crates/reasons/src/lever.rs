@@ -133,24 +133,7 @@ const VALUES: CheckSet = CheckSet::of(&[
     Check::AmpInputLow,
     Check::AmpInputHigh,
 ])
-.and(DIVIDER);
-
-/// Checks that may change when the divider is chosen again.
-const DIVIDER: CheckSet = CheckSet::of(&[
-    Check::DividerWindow,
-    Check::OutputError,
-    Check::RfPower,
-    Check::ReachHigh,
-    Check::ReachLow,
-    Check::LowStop,
-    Check::Ceiling,
-    Check::RxPower,
-    Check::RiPower,
-    Check::RfVoltage,
-    Check::RxVoltage,
-    Check::PotPower,
-    Check::PotVoltage,
-]);
+.and(CheckSet::DIVIDER);
 
 /// Checks that may change with the transistor's dissipation.
 const HEAT: CheckSet = CheckSet::of(&[
@@ -249,7 +232,7 @@ pub static ALL: [Lever; 31] = [
                 *tolerance = x;
             }
         },
-        DIVIDER.and(TOP).and(BOTTOM),
+        CheckSet::DIVIDER.and(TOP).and(BOTTOM),
     ),
     sheet_key(
         &keys::OUTPUT_ADJUST_FROM_V,
@@ -262,7 +245,7 @@ pub static ALL: [Lever; 31] = [
                 *from_v = x;
             }
         },
-        DIVIDER.and(BOTTOM),
+        CheckSet::DIVIDER.and(BOTTOM),
     ),
     sheet_key(
         &keys::OUTPUT_ADJUST_TO_V,
@@ -275,7 +258,7 @@ pub static ALL: [Lever; 31] = [
                 *to_v = x;
             }
         },
-        DIVIDER.and(TOP),
+        CheckSet::DIVIDER.and(TOP),
     ),
     sheet_key(
         &keys::OUTPUT_LOW_STOP_V,
@@ -288,7 +271,7 @@ pub static ALL: [Lever; 31] = [
                 *low_stop_v = x;
             }
         },
-        DIVIDER.and(BOTTOM),
+        CheckSet::DIVIDER.and(BOTTOM),
     ),
     sheet_key(
         &keys::OUTPUT_CEILING_V,
@@ -301,7 +284,7 @@ pub static ALL: [Lever; 31] = [
                 *ceiling_v = Some(x);
             }
         },
-        DIVIDER,
+        CheckSet::DIVIDER,
     ),
     sheet_key(&keys::LOAD_MAX_A, |r| Some(r.load.max_a), |r, x| r.load.max_a = x, EMITTER_CURRENT),
     sheet_key(
@@ -347,25 +330,25 @@ pub static ALL: [Lever; 31] = [
         &keys::DIVIDER_MIN_A,
         |r| Some(r.divider.min_a),
         |r, x| r.divider.min_a = x,
-        DIVIDER.and(checks(&[Check::NoLoad])),
+        CheckSet::DIVIDER.and(checks(&[Check::NoLoad])),
     ),
     sheet_key(
         &keys::DIVIDER_MAX_A,
         |r| Some(r.divider.max_a),
         |r, x| r.divider.max_a = x,
-        DIVIDER.and(EMITTER_CURRENT),
+        CheckSet::DIVIDER.and(EMITTER_CURRENT),
     ),
     sheet_key(
         &keys::DIVIDER_ALLOW_ERROR_V,
         |r| Some(r.divider.allow_error_v),
         |r, x| r.divider.allow_error_v = x,
-        DIVIDER,
+        CheckSet::DIVIDER,
     ),
     sheet_key(
         &keys::DIVIDER_ALLOW_BIAS_A,
         |r| Some(r.divider.allow_bias_a),
         |r, x| r.divider.allow_bias_a = x,
-        DIVIDER,
+        CheckSet::DIVIDER,
     ),
     with_other_rows(sheet_key(
         &keys::THERMAL_SINK_C_PER_W,

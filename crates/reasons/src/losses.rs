@@ -35,7 +35,7 @@ pub fn concerns(slot: Slot, check: Check) -> bool {
         Slot::Zener => OF_REFERENCE.and(OF_MEETING),
         Slot::BiasLine => OF_REFERENCE,
         Slot::Amplifier => OF_SUPPLY.and(OF_MEETING).and(OF_DRIVE),
-        Slot::DividerLine | Slot::Pot => OF_DIVIDER,
+        Slot::DividerLine | Slot::Pot => CheckSet::DIVIDER,
         Slot::Pass => OF_POWER.and(OF_DRIVE),
         Slot::Heatsink => OF_POWER,
     };
@@ -87,25 +87,8 @@ const OF_SUPPLY: CheckSet = CheckSet::of(&[Check::AmpSupplyHigh, Check::AmpSuppl
 /// Checks in which an amplifier meets a reference side, all but those of the divider.
 const OF_INPUT: CheckSet = CheckSet::of(&[Check::AmpInputLow, Check::AmpInputHigh]);
 
-/// Checks of the divider.
-const OF_DIVIDER: CheckSet = CheckSet::of(&[
-    Check::DividerWindow,
-    Check::OutputError,
-    Check::RfPower,
-    Check::ReachHigh,
-    Check::ReachLow,
-    Check::LowStop,
-    Check::Ceiling,
-    Check::RxPower,
-    Check::RiPower,
-    Check::RfVoltage,
-    Check::RxVoltage,
-    Check::PotPower,
-    Check::PotVoltage,
-]);
-
 /// Checks in which an amplifier meets a reference side.
-const OF_MEETING: CheckSet = OF_INPUT.and(OF_DIVIDER);
+const OF_MEETING: CheckSet = OF_INPUT.and(CheckSet::DIVIDER);
 
 impl OpenChecks {
     fn new(problem: &Problem<'_>) -> Self {
@@ -116,8 +99,8 @@ impl OpenChecks {
             zeners: all(problem.zeners.len(), OF_REFERENCE.and(OF_MEETING)),
             bias_lines: all(problem.bias_lines.len(), OF_REFERENCE),
             amplifiers: all(problem.amplifiers.len(), OF_SUPPLY.and(OF_MEETING).and(OF_DRIVE)),
-            divider_lines: all(problem.divider_lines.len(), OF_DIVIDER),
-            pots: all(pots, OF_DIVIDER),
+            divider_lines: all(problem.divider_lines.len(), CheckSet::DIVIDER),
+            pots: all(pots, CheckSet::DIVIDER),
             // Filled in where transistors are mounted.
             transistors: vec![None; problem.transistors.len()],
             heatsinks: vec![None; sinks],
