@@ -2,6 +2,8 @@
 
 #![allow(dead_code)] // each test file uses some of it
 
+pub mod tool;
+
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output};
 
