@@ -11,7 +11,7 @@
 //! | [`generated`] | the parts of pages that are made from declarations |
 //! | [`code`] | where a function stands in the sources |
 //! | [`manifest`] | the crates of the workspace and what they depend on |
-//! | [`shown`] | the README's example of output |
+//! | [`shown`], [`session`] | output that pages show, held against what the program prints |
 //!
 //! It serves tests and writers alone and is no part of the tool.
 
@@ -19,6 +19,7 @@ pub mod code;
 pub mod generated;
 pub mod manifest;
 pub mod page;
+pub mod session;
 pub mod shown;
 
 use std::path::PathBuf;

@@ -1,25 +1,19 @@
-//! For writers of the pages:
-//!
-//! * `cargo run -p docs-check -- renew` writes anew what the pages take from the code;
-//! * `cargo run -p docs-check -- shown FILE` holds the README's example of output against what the
-//!   program printed into FILE.
+//! For writers of the pages: `cargo run -p docs-check -- renew` writes anew what the pages take from the
+//! code, and the output that they show.
 
-use docs_check::page::Page;
-use docs_check::{generated, root, shown};
-use std::path::Path;
-use std::process::ExitCode;
+use docs_check::session::Session;
+use docs_check::{generated, page, root, shown};
+use std::io;
+use std::path::{Path, PathBuf};
+use std::process::{Command, ExitCode};
 
 fn main() -> ExitCode {
     let arguments: Vec<String> = std::env::args().skip(1).collect();
-    let outcome = match arguments.iter().map(String::as_str).collect::<Vec<_>>()[..] {
-        ["renew"] => renew(),
-        ["shown", file] => is_shown(Path::new(file)),
-        _ => {
-            eprintln!("usage: docs-check renew | shown FILE");
-            return ExitCode::from(2);
-        }
-    };
-    match outcome {
+    if arguments != ["renew"] {
+        eprintln!("usage: docs-check renew");
+        return ExitCode::from(2);
+    }
+    match renew(&root()) {
         Ok(()) => ExitCode::SUCCESS,
         Err(error) => {
             eprintln!("docs-check: {error}");
@@ -28,30 +22,36 @@ fn main() -> ExitCode {
     }
 }
 
-fn renew() -> std::io::Result<()> {
-    let root = root();
-    for (page, text) in generated::renewed(&root)? {
-        if text != page.text {
-            std::fs::write(root.join(&page.name), text)?;
-            println!("renewed {}", page.name);
-        }
+fn renew(root: &Path) -> io::Result<()> {
+    for (page, text) in generated::renewed(root)? {
+        write_if_new(root, &page, &text)?;
+    }
+    let program = built_program()?;
+    for page in page::all(root)? {
+        let session = Session::new(root, &program)?;
+        write_if_new(root, &page, &shown::renewed(&page, &session)?)?;
     }
     Ok(())
 }
 
-fn is_shown(file: &Path) -> std::io::Result<()> {
-    let output = std::fs::read_to_string(file)?;
-    let readme = Page::read(&root(), "README.md")?;
-    let excerpts = readme.code_blocks("text");
-    if excerpts.is_empty() {
-        return Err(std::io::Error::other("README.md shows no output"));
-    }
-    for excerpt in &excerpts {
-        if let Some(line) = shown::first_missing(excerpt, &output) {
-            let what =
-                format!("README.md shows output that has changed, from this line on: {line}");
-            return Err(std::io::Error::other(what));
-        }
+fn write_if_new(root: &Path, page: &page::Page, text: &str) -> io::Result<()> {
+    if text != page.text {
+        std::fs::write(root.join(&page.name), text)?;
+        println!("renewed {}", page.name);
     }
     Ok(())
+}
+
+/// The program, built anew beside this one.
+fn built_program() -> io::Result<PathBuf> {
+    let mut build = Command::new(std::env::var_os("CARGO").unwrap_or_else(|| "cargo".into()));
+    build.args(["build", "--quiet", "-p", "railwright"]);
+    if !cfg!(debug_assertions) {
+        build.arg("--release");
+    }
+    if !build.status()?.success() {
+        return Err(io::Error::other("the program can't be built"));
+    }
+    let name = format!("railwright{}", std::env::consts::EXE_SUFFIX);
+    Ok(std::env::current_exe()?.with_file_name(name))
 }
