@@ -13,6 +13,8 @@
 //! | [`notices`] | faults and doubts with the text at fault underlined |
 //! | [`remark`] | what no result checks, and cautions |
 //! | [`identity`] | a candidate's short id |
+//! | [`table`] | typed tables, and them as CSV and on a terminal |
+//! | [`workbook`], [`markdown`] | typed tables as `.xlsx` and `.md` |
 //! | [`figure`], [`hash`], [`look`], [`spreadsheet`] | numbers, hashes, text for a terminal, text for a cell |
 //!
 //! This crate computes no check and no ranking. It does not know the argument parser, the terminal
@@ -26,6 +28,7 @@ pub mod hash;
 pub mod identity;
 pub mod json;
 pub mod look;
+pub mod markdown;
 pub mod notices;
 pub mod proof;
 pub mod ranking_csv;
@@ -33,4 +36,6 @@ pub mod reasons;
 pub mod remark;
 pub mod shortlist;
 pub mod spreadsheet;
+pub mod table;
 pub mod terminal;
+pub mod workbook;

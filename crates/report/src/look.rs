@@ -80,7 +80,8 @@ impl Look {
 /// A space at which no line breaks.
 const NO_BREAK: char = '\u{a0}';
 
-fn acts_on_terminal(c: char) -> bool {
+/// Control characters, and marks that turn the direction of writing.
+pub(crate) fn acts_on_terminal(c: char) -> bool {
     let turns_writing =
         matches!(c, '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}');
     c.is_control() || turns_writing
