@@ -402,9 +402,10 @@ fn read_row<T: Figures>(
         return tell_faults(place, noted, rows);
     }
     let (part, maker) = (CompactString::new(part), CompactString::new(maker));
+    let stated = |text: &str| (!text.is_empty()).then(|| CompactString::new(text));
+    let package = stated(package);
     match (figures, price) {
         (Some(figures), Some(price)) if noted.lacks.is_empty() => {
-            let stated = |text: &str| (!text.is_empty()).then(|| CompactString::new(text));
             rows.rows.push(Row {
                 file: 0,
                 line,
@@ -414,14 +415,24 @@ fn read_row<T: Figures>(
                 stock,
                 lead_weeks,
                 status,
-                package: stated(package),
+                package,
                 pinout: stated(pinout),
                 figures,
             });
         }
-        _ => {
-            let lacks = noted.lacks.clone();
-            rows.unproven.push(Unproven { file: 0, line, part, maker, status, stock, lacks });
+        (_, price) => {
+            rows.unproven.push(Unproven {
+                file: 0,
+                line,
+                part,
+                maker,
+                status,
+                stock,
+                price,
+                lead_weeks,
+                package,
+                lacks: noted.lacks.clone(),
+            });
         }
     }
 }

@@ -157,6 +157,12 @@ pub struct Unproven {
     pub status: Status,
     /// Pieces in stock; None: the catalog doesn't say.
     pub stock: Option<f64>,
+    /// What one piece costs; None: the cell is blank.
+    pub price: Option<Price>,
+    /// Weeks until an order arrives.
+    pub lead_weeks: Option<f64>,
+    /// Its package.
+    pub package: Option<CompactString>,
     /// The columns it lacks, in the order in which they are declared.
     pub lacks: Vec<&'static str>,
 }

@@ -2,6 +2,7 @@
 
 use crate::file::{Design, Given, Inline};
 use crate::keys::Resistor;
+use crate::proof::Ohms;
 use crate::text::Mark;
 use crate::write::full_name;
 use catalog::{Catalog, Kind, LeftOut, Row, Shop, Sink, Unproven};
@@ -61,6 +62,8 @@ pub struct Part<'a, T> {
     pub shop: &'a Shop,
     /// The design's own cells, where they describe the part.
     pub inline: Option<&'a Inline>,
+    /// The design names it in its slots; else it goes by the name of the slot.
+    pub is_named_in_slots: bool,
 }
 
 impl<T> Clone for Part<'_, T> {
@@ -189,6 +192,11 @@ impl<'a> Parts<'a> {
         find.parts(shop, rail)
     }
 
+    /// The resistors as fitted.
+    pub fn ohms(&self) -> Ohms {
+        Ohms { rz: self.rz_ohm, upper: self.upper_ohm, ri: self.ri_ohm }
+    }
+
     /// Every part, in the order of slots.
     pub fn places(&self) -> Vec<PartPlace<'a>> {
         let mut places = vec![
@@ -277,7 +285,14 @@ impl<'a> Find<'a, '_> {
             let inline = entry.inline.as_ref()?;
             let catalog = catalog(&inline.shop);
             let found = holdings(catalog).next()?;
-            Some(Part { found, catalog, shop: &inline.shop, inline: Some(inline) })
+            let is_named_in_slots = entry.part.is_some();
+            Some(Part {
+                found,
+                catalog,
+                shop: &inline.shop,
+                inline: Some(inline),
+                is_named_in_slots,
+            })
         };
         let Some(name) = &entry.part else {
             let own = own();
@@ -293,7 +308,9 @@ impl<'a> Find<'a, '_> {
         };
         let catalog = catalog(shop);
         match look_up(catalog, &name.value).as_slice() {
-            [found] => Some(Part { found: *found, catalog, shop, inline: None }),
+            [found] => {
+                Some(Part { found: *found, catalog, shop, inline: None, is_named_in_slots: true })
+            }
             [] => {
                 let own = own();
                 if own.is_none() {

@@ -66,6 +66,17 @@ impl<'a> Fitted<'a> {
     }
 }
 
+/// The resistors of a set of parts, Ω.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Ohms {
+    /// RZ.
+    pub rz: f64,
+    /// RF of a fixed output, RX of an adjustable one; 0 for a link.
+    pub upper: f64,
+    /// RI.
+    pub ri: f64,
+}
+
 /// A design under the conditions of a rail: what every check reads.
 #[derive(Debug, Clone)]
 pub struct AtRail<'a> {
@@ -96,9 +107,14 @@ pub struct AtRail<'a> {
 }
 
 impl<'a> AtRail<'a> {
-    /// Puts parts and values under a rail's conditions. None only where an unmounted transistor gives
-    /// no rth_ja, which [`Fitted::new`] rules out.
+    /// Puts the parts and values of a design under a rail's conditions. None only where an unmounted
+    /// transistor gives no rth_ja, which [`Fitted::new`] rules out.
     pub fn new(fitted: &Fitted<'_>, parts: &Parts<'_>, rail: &'a Rail) -> Option<Self> {
+        Self::with(fitted, parts.ohms(), rail)
+    }
+
+    /// The same for any parts and values.
+    pub fn with(fitted: &Fitted<'_>, ohms: Ohms, rail: &'a Rail) -> Option<Self> {
         let duty = Duty::new(rail);
         let span_c = rail.temperature_span_c();
         let of_line = |ohm: f64, line: &ResistorLine| {
@@ -120,12 +136,12 @@ impl<'a> AtRail<'a> {
             duty,
             zener: ZenerAtRail::new(fitted.zener, rail),
             bias_line: LineAtRail::new(fitted.bias_line, rail),
-            rz: of_line(parts.rz_ohm, fitted.bias_line),
+            rz: of_line(ohms.rz, fitted.bias_line),
             amplifier: AmplifierAtRail::new(fitted.amplifier, rail),
             divider_line: LineAtRail::new(fitted.divider_line, rail),
             divider: Divider {
-                upper: of_line(parts.upper_ohm, fitted.divider_line),
-                ri: of_line(parts.ri_ohm, fitted.divider_line),
+                upper: of_line(ohms.upper, fitted.divider_line),
+                ri: of_line(ohms.ri, fitted.divider_line),
             },
             pot: fitted.pot.map(|pot| PotAtRail::new(pot, rail)),
             pass,
