@@ -4,16 +4,25 @@ use std::fmt;
 use std::io::{self, Write};
 use std::path::{Path, PathBuf};
 
-/// A format that a shortlist can be written in.
+/// A format that a result can be written in.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub(crate) enum Format {
     Json,
     Csv,
+    Xlsx,
+    Md,
 }
 
 impl Format {
-    /// Each format with the ending of its files.
-    const ENDINGS: [(&'static str, Format); 2] = [("json", Format::Json), ("csv", Format::Csv)];
+    /// The ending of its files.
+    const fn ending(self) -> &'static str {
+        match self {
+            Format::Json => "json",
+            Format::Csv => "csv",
+            Format::Xlsx => "xlsx",
+            Format::Md => "md",
+        }
+    }
 }
 
 /// A file to be written, its format told by its ending.
@@ -23,18 +32,19 @@ pub(crate) struct Target {
     pub(crate) format: Format,
 }
 
-impl std::str::FromStr for Target {
-    type Err = String;
-
-    fn from_str(text: &str) -> Result<Self, String> {
+impl Target {
+    /// A file in one of the formats that a command writes.
+    pub(crate) fn read(text: &str, formats: &[Format]) -> Result<Self, String> {
         let path = PathBuf::from(text);
         let ending = path.extension().unwrap_or_default().to_string_lossy().to_ascii_lowercase();
-        match Format::ENDINGS.into_iter().find(|(known, _)| *known == ending) {
-            Some((_, format)) => Ok(Self { path, format }),
+        match formats.iter().find(|format| format.ending() == ending) {
+            Some(format) => Ok(Self { path, format: *format }),
             None => {
-                let known = Format::ENDINGS.map(|(known, _)| format!(".{known}")).join(" or ");
+                let known: Vec<String> =
+                    formats.iter().map(|f| format!(".{}", f.ending())).collect();
                 Err(format!(
-                    "the file's ending tells the format: write a name that ends in {known}"
+                    "the file's ending tells the format: write a name that ends in {}",
+                    known.join(" or ")
                 ))
             }
         }
@@ -148,10 +158,11 @@ mod tests {
 
     #[test]
     fn the_ending_tells_the_format() {
-        let format = |name: &str| name.parse::<Target>().map(|t| t.format);
+        let formats = [Format::Json, Format::Csv];
+        let format = |name: &str| Target::read(name, &formats).map(|t| t.format);
         assert_eq!(format("a/b.JSON"), Ok(Format::Json));
         assert_eq!(format("b.csv"), Ok(Format::Csv));
-        for name in ["b.yaml", "b", "json"] {
+        for name in ["b.yaml", "b", "json", "b.xlsx"] {
             let told = format(name).unwrap_err();
             assert!(told.contains(".json or .csv"), "{told}");
         }

@@ -2,8 +2,10 @@
 
 mod arguments;
 mod command;
+mod desk;
 mod files;
 mod load;
+mod order_lines;
 mod progress;
 mod screen;
 

@@ -13,6 +13,8 @@
 //! | [`notices`] | faults and doubts with the text at fault underlined |
 //! | [`remark`] | what no result checks, and cautions |
 //! | [`identity`] | a candidate's short id |
+//! | [`dossier`] | a shortlist, or designs, as tables for one file |
+//! | [`mod@purchase`] | order lines, and the purchase list over several rails |
 //! | [`table`] | typed tables, and them as CSV and on a terminal |
 //! | [`workbook`], [`markdown`] | typed tables as `.xlsx` and `.md` |
 //! | [`figure`], [`hash`], [`look`], [`spreadsheet`] | numbers, hashes, text for a terminal, text for a cell |
@@ -23,6 +25,7 @@
 pub mod catalog_check;
 mod choice;
 pub mod design;
+pub mod dossier;
 pub mod figure;
 pub mod hash;
 pub mod identity;
@@ -31,6 +34,7 @@ pub mod look;
 pub mod markdown;
 pub mod notices;
 pub mod proof;
+pub mod purchase;
 pub mod ranking_csv;
 pub mod reasons;
 pub mod remark;

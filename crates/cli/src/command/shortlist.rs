@@ -4,13 +4,15 @@ use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing, SpreadLimit};
 use crate::files::{Format, Target, check, folder_of, write_whole};
 use crate::load::Loaded;
+use crate::order_lines::of_candidate;
 use crate::progress::watched;
 use crate::screen::Screen;
 use clap::{Args, ValueEnum};
 use eligible::Eligible;
+use report::dossier::shortlist::{Ordered, document};
 use report::notices::Warnings;
 use report::shortlist::{Shortlist, lost};
-use report::{design, json, ranking_csv, terminal};
+use report::{design, json, markdown, ranking_csv, terminal, workbook};
 use select::candidate::Candidate;
 use select::count::{Counts, count};
 use select::front::front;
@@ -55,9 +57,13 @@ pub(crate) struct Arguments {
     /// The design file to save it as
     #[arg(long = "as", id = "as_file", value_name = "FILE", requires = "keep")]
     as_file: Option<PathBuf>,
-    /// Write the list to a file as well: .json or .csv; may be given several times
-    #[arg(long, value_name = "FILE")]
+    /// Write the list to a file as well: .xlsx and .md with order lines and every check, .csv with the
+    /// ranking, or .json; may be given several times
+    #[arg(long, value_name = "FILE", value_parser = target)]
     out: Vec<Target>,
+    /// The candidate that order lines are for, by its rank or id [default: the first]
+    #[arg(long, value_name = "RANK|ID", requires = "out")]
+    pick: Option<String>,
     /// Replace files that are there already
     #[arg(long)]
     overwrite: bool,
@@ -72,8 +78,15 @@ Examples, on the sample catalogs:
   railwright shortlist catalogs-sample/sheets/bench-5-15v.toml \\
       --catalogs catalogs-sample --by cost --spread pass=1 --count
 
-Exit status: 0 where a set of parts holds, 1 where none does or --keep names no row, 2 where the input
+Exit status: 0 where a set of parts holds, 1 where none does or --keep or --pick names no row, 2 where the input
 or the command line is at fault.";
+
+/// The formats that are written.
+const FORMATS: [Format; 4] = [Format::Json, Format::Csv, Format::Xlsx, Format::Md];
+
+fn target(text: &str) -> Result<Target, String> {
+    Target::read(text, &FORMATS)
+}
 
 /// One criterion of the score.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
@@ -116,14 +129,12 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     let list = Shortlist::new(loaded.files(), &eligible, &problem, &candidates, asked_for)
         .map_err(|e| Fault::Defect(e.to_string()))?;
 
-    for target in &arguments.out {
-        write_whole(&target.path, &in_format(&list, target.format)?, arguments.overwrite)?;
-        screen.mention(&format!("wrote {}", target.path.display()));
-    }
+    let written = write(arguments, &list, &eligible, &candidates, screen)?;
     let kept = keep(arguments, &list, &eligible, &loaded.sheet_path, screen)?;
     let text = terminal::shortlist(&list, counts.as_ref().map(lost).as_ref(), &screen.data);
     screen.show(&text).map_err(|e| Fault::Defect(format!("standard output: {e}")))?;
-    Ok(if list.candidates.is_empty() { Answer::No } else { kept })
+    let is_no = list.candidates.is_empty() || written == Answer::No;
+    Ok(if is_no { Answer::No } else { kept })
 }
 
 /// Sets one weight to 1 and the others to 0, and says so among what is assumed.
@@ -182,11 +193,43 @@ fn counted(
     wanted.then(|| watched("counting", screen.shows_progress(), |tell| count(problem, tell)))
 }
 
-fn in_format(list: &Shortlist<'_>, format: Format) -> Result<Vec<u8>, Fault> {
-    match format {
-        Format::Json => json::shortlist(list).map_err(|e| Fault::Defect(e.to_string())),
-        Format::Csv => ranking_csv::ranking(list).map_err(|e| Fault::Defect(e.to_string())),
+/// Writes the files that are asked for; No, and no file with order lines, where --pick names no row.
+fn write(
+    arguments: &Arguments,
+    list: &Shortlist<'_>,
+    eligible: &Eligible<'_>,
+    candidates: &[Candidate],
+    screen: &Screen,
+) -> Result<Answer, Fault> {
+    let name = arguments.pick.as_deref().unwrap_or("1");
+    let picked = list.named(name);
+    let mut answer = Answer::Done;
+    for target in &arguments.out {
+        let has_lines = matches!(target.format, Format::Xlsx | Format::Md);
+        if has_lines && picked.is_none() && arguments.pick.is_some() {
+            let path = target.path.display();
+            screen.say(&format!("error: {path} is not written: {}", no_such_row(list, name)));
+            answer = Answer::No;
+            continue;
+        }
+        let ordered = || {
+            let candidate = picked?;
+            let lines = of_candidate(eligible, candidates.get(candidate.rank.checked_sub(1)?)?)?;
+            Some(Ordered { candidate, lines })
+        };
+        let in_tables = || document(list, ordered().as_ref());
+        let bytes = match target.format {
+            Format::Json => json::shortlist(list).map_err(|e| Fault::Defect(e.to_string()))?,
+            Format::Csv => ranking_csv::ranking(list).map_err(|e| Fault::Defect(e.to_string()))?,
+            Format::Xlsx => {
+                workbook::document(&in_tables()).map_err(|e| Fault::Defect(e.to_string()))?
+            }
+            Format::Md => markdown::document(&in_tables()).into_bytes(),
+        };
+        write_whole(&target.path, &bytes, arguments.overwrite)?;
+        screen.mention(&format!("wrote {}", target.path.display()));
     }
+    Ok(answer)
 }
 
 /// Saves the design that is asked for; No where the list has no such row.
@@ -201,11 +244,7 @@ fn keep(
         return Ok(Answer::Done);
     };
     let Some(candidate) = list.named(name) else {
-        let rows = list.candidates.len();
-        screen.say(&format!(
-            "error: nothing is saved: the list has {rows} rows, and none with the rank or id `{name}`; \
-             --top N shows more"
-        ));
+        screen.say(&format!("error: nothing is saved: {}", no_such_row(list, name)));
         return Ok(Answer::No);
     };
     let sheet = relative(sheet_path, folder_of(path));
@@ -213,6 +252,12 @@ fn keep(
     write_whole(path, text.as_bytes(), arguments.overwrite)?;
     screen.mention(&format!("saved {} ({}) as {}", candidate.rank, candidate.id, path.display()));
     Ok(Answer::Done)
+}
+
+/// That a name is no rank or id of the list.
+fn no_such_row(list: &Shortlist<'_>, name: &str) -> String {
+    let rows = list.candidates.len();
+    format!("the list has {rows} rows, and none with the rank or id `{name}`; --top N shows more")
 }
 
 /// The path of a file as seen from a folder, with `/` between its parts; as it is where no way leads
