@@ -2,6 +2,7 @@
 
 mod catalog_check;
 mod catalog_gaps;
+mod order;
 mod shortlist;
 mod verify;
 mod whynot;
@@ -24,6 +25,7 @@ enum Command {
     Shortlist(shortlist::Arguments),
     Verify(verify::Arguments),
     Whynot(whynot::Arguments),
+    Order(order::Arguments),
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
@@ -82,6 +84,7 @@ impl Cli {
             Command::Shortlist(arguments) => arguments.showing,
             Command::Verify(arguments) => arguments.showing,
             Command::Whynot(arguments) => arguments.showing,
+            Command::Order(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
         }
@@ -94,6 +97,7 @@ pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
         Command::Shortlist(arguments) => shortlist::run(&arguments, screen),
         Command::Verify(arguments) => verify::run(&arguments, screen),
         Command::Whynot(arguments) => whynot::run(&arguments, screen),
+        Command::Order(arguments) => order::run(&arguments, screen),
         Command::Catalog(CatalogCommand::Check(arguments)) => {
             catalog_check::run(&arguments, screen)
         }

@@ -42,11 +42,14 @@ pub fn document(document: &Document) -> String {
     text
 }
 
+/// A table without the columns in which no cell is filled, to save width.
 fn table(table: &Table) -> String {
     let words = Words::new(table);
-    let texts: Vec<Vec<String>> = (0..)
-        .zip(&table.columns)
-        .map(|(place, column)| {
+    let filled: Vec<_> =
+        (0..).zip(&table.columns).filter(|(place, _)| table.is_filled(*place)).collect();
+    let texts: Vec<Vec<String>> = filled
+        .iter()
+        .map(|&(place, column)| {
             let mut texts = vec![escaped(&table.heading(column))];
             let cells = table.rows.iter().map(|row| row.get(place).unwrap_or(&Cell::Blank));
             texts.extend(cells.map(|cell| escaped(&words.cell(place, cell))));
@@ -58,7 +61,7 @@ fn table(table: &Table) -> String {
     let mut lines = String::new();
     let rows = texts.first().map_or(0, Vec::len);
     for row in 0..rows {
-        for ((column, texts), width) in table.columns.iter().zip(&texts).zip(&widths) {
+        for (((_, column), texts), width) in filled.iter().zip(&texts).zip(&widths) {
             let text = texts.get(row).map_or("", String::as_str);
             let room = " ".repeat(width.saturating_sub(display_width(text)));
             let _ = match column.is_number() {
@@ -68,7 +71,7 @@ fn table(table: &Table) -> String {
         }
         lines += "|\n";
         if row == 0 {
-            for (column, width) in table.columns.iter().zip(&widths) {
+            for ((_, column), width) in filled.iter().zip(&widths) {
                 let end = if column.is_number() { ':' } else { '-' };
                 let _ = write!(lines, "| {}{end} ", "-".repeat(width.saturating_sub(1)));
             }
@@ -83,7 +86,8 @@ fn total(table: &Table, words: &Words<'_>, place: usize) -> Option<String> {
     if table.totals.is_empty() {
         return None;
     }
-    let word = || if place == 0 { "**total**".to_owned() } else { String::new() };
+    let total = || format!("**{}**", escaped(&table.total_word));
+    let word = || if place == 0 { total() } else { String::new() };
     Some(words.total(place).map_or_else(word, |sum| format!("**{sum}**")))
 }
 

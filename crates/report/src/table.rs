@@ -178,6 +178,8 @@ pub struct Table {
     /// The sums below the columns that are totalled, by the heading. Given with the rows and not added
     /// up from cells: sums of money are exact.
     pub totals: Vec<(&'static str, f64)>,
+    /// What the row of sums is called.
+    pub total_word: String,
 }
 
 impl Table {
@@ -190,7 +192,13 @@ impl Table {
             columns: columns.to_vec(),
             rows: Vec::new(),
             totals: Vec::new(),
+            total_word: "total".to_owned(),
         }
+    }
+
+    /// Some cell of a column is not blank.
+    pub fn is_filled(&self, place: usize) -> bool {
+        self.rows.iter().any(|row| row.get(place).is_some_and(|cell| *cell != Cell::Blank))
     }
 
     /// The place of a column.
@@ -202,6 +210,14 @@ impl Table {
     pub fn total(&self, column: &Column) -> Option<f64> {
         let total = self.totals.iter().find(|(heading, _)| *heading == column.heading);
         total.filter(|_| column.is_totalled).map(|(_, sum)| *sum)
+    }
+
+    /// Says in the row of sums that some rows have no amount.
+    pub fn tell_unpriced(&mut self, lines: usize) {
+        if lines > 0 {
+            let lines = if lines == 1 { "1 line".to_owned() } else { format!("{lines} lines") };
+            self.total_word = format!("total without {lines} of unknown price");
+        }
     }
 
     /// The heading of a column with its unit: `load (A)`, `unit price (EUR)`.

@@ -152,7 +152,7 @@ fn write_totals(
             let formula = Formula::new(formula).set_result(sum.to_string());
             sheet.write_formula_with_format(below, place, formula, &format)?;
         } else {
-            let word = if place == 0 { "total" } else { "" };
+            let word = if place == 0 { table.total_word.as_str() } else { "" };
             sheet.write_string_with_format(below, place, word, &looks.total_word())?;
         }
     }

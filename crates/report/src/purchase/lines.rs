@@ -61,6 +61,7 @@ pub const COLUMNS: [Column; 21] = [
 pub struct RailLines {
     rows: Vec<Vec<Cell>>,
     total: Money,
+    unpriced: usize,
 }
 
 impl RailLines {
@@ -73,7 +74,11 @@ impl RailLines {
         second_sources: Option<&BySlot>,
     ) -> Self {
         let row = |line: &Line<'_>| row(rail, line, boards, second_sources);
-        Self { rows: order.lines.iter().map(row).collect(), total: order.total.clone() }
+        Self {
+            rows: order.lines.iter().map(row).collect(),
+            total: order.total.clone(),
+            unpriced: order.unpriced(),
+        }
     }
 }
 
@@ -85,6 +90,7 @@ pub fn table(rails: &[RailLines], currency: Option<&str>) -> Table {
     let total: Money = rails.iter().map(|rail| rail.total.clone()).sum();
     if !table.rows.is_empty() {
         table.totals = vec![(LINE_TOTAL, total.amount())];
+        table.tell_unpriced(rails.iter().map(|rail| rail.unpriced).sum());
     }
     table
 }

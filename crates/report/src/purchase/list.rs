@@ -83,10 +83,11 @@ pub fn document(list: &PurchaseList) -> Document {
 
 /// The lines alone.
 pub fn lines(list: &PurchaseList) -> Table {
-    let mut table = Table::new("Purchase list", &LINE_COLUMNS);
+    let mut table = Table::new("Lines", &LINE_COLUMNS);
     table.currency.clone_from(&list.currency);
     table.rows = list.lines.iter().map(|line| line_row(line, list)).collect();
     table.totals = vec![(LINE_TOTAL, list.total.0)];
+    table.tell_unpriced(list.unpriced);
     table
 }
 

@@ -1,46 +1,44 @@
 //! The joint purchase list on a terminal.
 
-use super::PurchaseList;
-use super::list::{cautions, lines};
+use super::list::cautions;
+use super::{LineRow, PurchaseList};
 use crate::look::Look;
-use crate::table::screen;
+use crate::table::{Cell, Column, Table, screen};
+use quantity::notation::{engineering, resistance};
 
-/// The columns that are shown; the files have them all.
-const SHOWN: [&str; 10] = [
-    "maker",
-    "part",
-    "value",
-    "unit",
-    "pieces",
-    "unit price",
-    "line total",
-    "short by",
-    "lead time",
-    "needed by",
+const LINE_TOTAL: &str = "line total";
+
+/// The columns that are shown; the files have more.
+const COLUMNS: [Column; 8] = [
+    Column::text("part", "`maker/part`"),
+    Column::text("value", "with its unit"),
+    Column::whole("pieces", "for all boards of all rails"),
+    Column::money("unit price", "at the quantity of all rails"),
+    Column::money(LINE_TOTAL, "pieces times unit price").totalled(),
+    Column::whole("short by", "pieces that the stock lacks"),
+    Column::number("lead time", "weeks", "until an order arrives"),
+    Column::text("for rail", "the numbers of the rails, and how many pieces each needs"),
 ];
 
 /// The list, and below it what to know before ordering.
 pub fn list(list: &PurchaseList, look: &Look) -> String {
-    let rails: Vec<String> = list
-        .rails
-        .iter()
-        .map(|rail| {
-            let boards = if rail.boards == 1 { "board" } else { "boards" };
-            format!("{} ({} {boards})", rail.rail, rail.boards)
-        })
-        .collect();
     let mut text = look.heading("Purchase list");
     text.push('\n');
-    text += &look.items(&rails, 0, 2);
+    for (number, rail) in (1..).zip(&list.rails) {
+        let boards = if rail.boards == 1 { "board" } else { "boards" };
+        let rail = format!("{number}  {}, {} {boards}", rail.rail, rail.boards);
+        text += &look.paragraph(&rail, 2, 5);
+    }
     text.push('\n');
-    text += &screen::table(&lines(list), &SHOWN, look);
-    let saved = list.saved();
-    if saved != 0.0 {
-        let currency = list.currency.as_deref().map(|c| format!(" {c}")).unwrap_or_default();
-        let (by, than) = (saved.abs(), if saved > 0.0 { "more" } else { "less" });
-        let said = format!("Bought rail by rail they would cost {by}{currency} {than}.");
+    let mut table = Table::new("Purchase list", &COLUMNS);
+    table.currency.clone_from(&list.currency);
+    table.rows = list.lines.iter().map(|line| row(line, list.rails.len())).collect();
+    table.totals = vec![(LINE_TOTAL, list.total.0)];
+    table.tell_unpriced(list.unpriced);
+    text += &screen::table(&table, &COLUMNS.map(|column| column.heading), look);
+    if let Some(sentence) = saved(list) {
         text.push('\n');
-        text += &look.paragraph(&said, 0, 2);
+        text += &look.paragraph(&sentence, 0, 2);
     }
     let cautions = cautions(list);
     if !cautions.is_empty() {
@@ -50,4 +48,35 @@ pub fn list(list: &PurchaseList, look: &Look) -> String {
         }
     }
     text
+}
+
+fn row(line: &LineRow, rails: usize) -> Vec<Cell> {
+    let value = line.value.map(|value| match line.unit {
+        Some("Ω") => resistance(value.0),
+        unit => engineering(value.0, unit.unwrap_or_default(), 4),
+    });
+    let needs: Vec<String> =
+        line.uses.iter().map(|of| format!("{}: {}", of.rail + 1, of.pieces)).collect();
+    vec![
+        line.full_name().into(),
+        value.into(),
+        line.pieces.into(),
+        line.unit_price.into(),
+        line.line_total.into(),
+        line.short_by.into(),
+        line.lead_weeks.into(),
+        // Of a single rail there is nothing to tell.
+        if rails > 1 { needs.join(", ").into() } else { Cell::Blank },
+    ]
+}
+
+/// What buying together saves; None where it makes no difference.
+fn saved(list: &PurchaseList) -> Option<String> {
+    let saved = list.saved();
+    if saved == 0.0 {
+        return None;
+    }
+    let currency = list.currency.as_deref().map(|c| format!(" {c}")).unwrap_or_default();
+    let than = if saved > 0.0 { "more" } else { "less" };
+    Some(format!("Bought rail by rail they would cost {}{currency} {than}.", saved.abs()))
 }

@@ -24,11 +24,8 @@ pub fn table(table: &Table, headings: &[&str], look: &Look) -> String {
     } else {
         drawing.force_no_tty();
     }
-    let is_filled = |place: usize| {
-        table.rows.iter().any(|row| row.get(place).is_some_and(|cell| *cell != Cell::Blank))
-    };
     let places = headings.iter().filter_map(|heading| table.place(heading));
-    let places: Vec<usize> = places.filter(|place| is_filled(*place)).collect();
+    let places: Vec<usize> = places.filter(|place| table.is_filled(*place)).collect();
     let columns: Vec<_> = places.iter().filter_map(|place| table.columns.get(*place)).collect();
     drawing.set_header(columns.iter().map(|column| {
         let cell = Drawn::new(look.text(&table.heading(column)));
@@ -44,7 +41,7 @@ pub fn table(table: &Table, headings: &[&str], look: &Look) -> String {
     }
     if !table.totals.is_empty() {
         let texts = places.iter().enumerate().map(|(at, place)| {
-            let word = || if at == 0 { "total".to_owned() } else { String::new() };
+            let word = || if at == 0 { table.total_word.clone() } else { String::new() };
             words.total(*place).unwrap_or_else(word)
         });
         drawing.add_row(texts);
