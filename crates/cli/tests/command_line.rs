@@ -366,7 +366,7 @@ fn no_escape_sequences_leave_the_program_but_on_a_terminal() {
 #[test]
 fn examples_of_the_help_run() {
     let sample = repository("");
-    for command in [&["shortlist"][..], &["catalog", "check"]] {
+    for command in [&["shortlist"][..], &["order"], &["catalog", "check"]] {
         let help = run(&sample, &[command, &["--help"]].concat()).out.replace("\\\n", " ");
         let examples: Vec<&str> =
             help.lines().filter_map(|line| line.trim().strip_prefix("railwright ")).collect();

@@ -2,6 +2,7 @@
 
 #![allow(dead_code)] // each test file uses some of it
 
+pub mod sheets;
 pub mod tool;
 
 use std::path::{Path, PathBuf};

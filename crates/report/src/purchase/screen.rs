@@ -4,7 +4,7 @@ use super::list::cautions;
 use super::{LineRow, PurchaseList};
 use crate::look::Look;
 use crate::table::{Cell, Column, Table, screen};
-use quantity::notation::{engineering, resistance};
+use quantity::notation::engineering;
 
 const LINE_TOTAL: &str = "line total";
 
@@ -34,7 +34,6 @@ pub fn list(list: &PurchaseList, look: &Look) -> String {
     table.currency.clone_from(&list.currency);
     table.rows = list.lines.iter().map(|line| row(line, list.rails.len())).collect();
     table.totals = vec![(LINE_TOTAL, list.total.0)];
-    table.tell_unpriced(list.unpriced);
     text += &screen::table(&table, &COLUMNS.map(|column| column.heading), look);
     if let Some(sentence) = saved(list) {
         text.push('\n');
@@ -51,10 +50,7 @@ pub fn list(list: &PurchaseList, look: &Look) -> String {
 }
 
 fn row(line: &LineRow, rails: usize) -> Vec<Cell> {
-    let value = line.value.map(|value| match line.unit {
-        Some("Ω") => resistance(value.0),
-        unit => engineering(value.0, unit.unwrap_or_default(), 4),
-    });
+    let value = line.value.map(|value| engineering(value.0, line.unit.unwrap_or_default(), 6));
     let needs: Vec<String> =
         line.uses.iter().map(|of| format!("{}: {}", of.rail + 1, of.pieces)).collect();
     vec![
