@@ -368,10 +368,19 @@ impl PassFigures {
         Finding {
             check: Check::SoaLoad,
             asked: self.hardest_load.asked_a,
-            allowed: rail.derating.soa
-                * self.hardest_load.curve_a
-                * self.derated(mounted.case.service_c),
+            allowed: self.service_area_a(self.hardest_load.curve_a, mounted, rail),
         }
+    }
+
+    /// What is left in service of a current that the DC curve gives at 25 °C case: soa·I·d(TC), A.
+    pub fn service_area_a(&self, curve_a: f64, mounted: &Mounted, rail: &Rail) -> f64 {
+        rail.derating.soa * curve_a * self.derated(mounted.case.service_c)
+    }
+
+    /// What is left at the end of a fault of a current that a curve gives at 25 °C case:
+    /// soa_fault·I·d(TF), A.
+    pub fn fault_area_a(&self, curve_a: f64, mounted: &Mounted, rail: &Rail) -> f64 {
+        rail.derating.soa_fault * curve_a * self.derated(mounted.case.fault_c)
     }
 
     /// `soa-fault`: the fault current against the derated safe operating area for its time; None
@@ -381,9 +390,7 @@ impl PassFigures {
         Some(Finding {
             check: Check::SoaFault,
             asked: fault.limit_a,
-            allowed: rail.derating.soa_fault
-                * self.fault_curve_a
-                * self.derated(mounted.case.fault_c),
+            allowed: self.fault_area_a(self.fault_curve_a, mounted, rail),
         })
     }
 

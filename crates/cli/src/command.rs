@@ -3,6 +3,7 @@
 mod catalog_check;
 mod catalog_gaps;
 mod order;
+mod plot;
 mod shortlist;
 mod verify;
 mod whynot;
@@ -26,6 +27,7 @@ enum Command {
     Verify(verify::Arguments),
     Whynot(whynot::Arguments),
     Order(order::Arguments),
+    Plot(plot::Arguments),
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
@@ -85,6 +87,7 @@ impl Cli {
             Command::Verify(arguments) => arguments.showing,
             Command::Whynot(arguments) => arguments.showing,
             Command::Order(arguments) => arguments.showing,
+            Command::Plot(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
         }
@@ -98,6 +101,7 @@ pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
         Command::Verify(arguments) => verify::run(&arguments, screen),
         Command::Whynot(arguments) => whynot::run(&arguments, screen),
         Command::Order(arguments) => order::run(&arguments, screen),
+        Command::Plot(arguments) => plot::run(&arguments, screen),
         Command::Catalog(CatalogCommand::Check(arguments)) => {
             catalog_check::run(&arguments, screen)
         }

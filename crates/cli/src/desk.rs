@@ -161,7 +161,7 @@ fn in_order(path: &Path) -> PathBuf {
 }
 
 /// The text of a file; None with a notice where it can't be read.
-fn read_text(path: &Path, notices: &mut Vec<Notice>) -> Option<String> {
+pub(crate) fn read_text(path: &Path, notices: &mut Vec<Notice>) -> Option<String> {
     let place = Place::file(path.display().to_string());
     let notice = match std::fs::read_to_string(path) {
         Ok(text) => return Some(text),

@@ -11,6 +11,7 @@ pub(crate) enum Format {
     Csv,
     Xlsx,
     Md,
+    Html,
 }
 
 impl Format {
@@ -21,6 +22,7 @@ impl Format {
             Format::Csv => "csv",
             Format::Xlsx => "xlsx",
             Format::Md => "md",
+            Format::Html => "html",
         }
     }
 }

@@ -65,6 +65,12 @@ impl Loaded {
         sound.then_some(eligible)
     }
 
+    /// The texts of the sheet and of the shop file; both were read as text, so that nothing is lost.
+    pub(crate) fn texts(&self) -> (&str, Option<&str>) {
+        let text = |bytes| std::str::from_utf8(bytes).unwrap_or_default();
+        (text(&self.sheet_bytes), self.shop_bytes.as_deref().map(text))
+    }
+
     /// The files as read.
     pub(crate) fn files(&self) -> Files<'_> {
         Files {

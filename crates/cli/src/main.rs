@@ -6,6 +6,7 @@ mod desk;
 mod files;
 mod load;
 mod order_lines;
+mod page;
 mod progress;
 mod screen;
 

@@ -14,6 +14,7 @@
 //! | [`read`] | reading one, with every fault at its place |
 //! | [`write()`] | writing one |
 //! | [`parts`] | what the names mean |
+//! | [`mod@chosen`] | a candidate of a search as the parts of a design |
 //! | [`proof`] | parts and values at a rail: every check |
 //! | [`condition`] | status, ban, pin, stock, polarity, blank cells, the heatsink's fit |
 //! | [`change`] | cells that have changed since a design was kept |
@@ -22,6 +23,7 @@
 //! This crate does not open files, print, choose a value or hold a formula.
 
 pub mod change;
+pub mod chosen;
 pub mod condition;
 pub mod file;
 pub mod keys;
@@ -31,7 +33,8 @@ mod read;
 mod text;
 mod write;
 
+pub use chosen::chosen;
 pub use file::Design;
-pub use read::read;
+pub use read::{is_design, read};
 pub use text::Mark;
 pub use write::{Kept, KeptPart, write};

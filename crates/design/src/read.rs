@@ -49,6 +49,19 @@ pub fn read(file_name: &str, text: &str, notices: &mut Vec<Notice>) -> Option<De
     design.filter(|_| sound)
 }
 
+/// The text of a file is that of a design: it has the key `design` at its top. A rail sheet has not, nor
+/// has a text that is no TOML.
+///
+/// ```
+/// assert!(design::is_design("design = 1\nname = \"x\""));
+/// assert!(!design::is_design("[rail]\nname = \"x\""));
+/// ```
+pub fn is_design(text: &str) -> bool {
+    let source = Source::new("", text);
+    let document = DeTable::parse_recoverable(source.text()).0.into_inner();
+    document.iter().any(|(name, _)| name.get_ref() == keys::DESIGN)
+}
+
 /// The document; None with the parser's faults as notices.
 fn parsed<'a>(source: &Source<'a>, notices: &mut Vec<Notice>) -> Option<DeTable<'a>> {
     let (document, faults) = DeTable::parse_recoverable(source.text());

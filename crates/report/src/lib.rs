@@ -6,7 +6,9 @@
 //! | [`json`] | it as JSON, format 1 |
 //! | [`ranking_csv`] | its ranking as CSV |
 //! | [`terminal`] | it as a table with what was covered, assumed, left unchecked |
+//! | [`page`] | it, or designs, as a page (HTML) with pictures and proofs |
 //! | [`design`] | one candidate as a design file |
+//! | [`drawn`] | lists and designs as what pictures are drawn from |
 //! | [`catalog_check`] | what a folder of catalogs holds and lacks |
 //! | [`proof`] | every check of a design, with formulas, numbers and sources |
 //! | [`mod@reasons`] | why nothing qualifies, why a part is not on the list, which blanks to fill |
@@ -26,6 +28,7 @@ pub mod catalog_check;
 mod choice;
 pub mod design;
 pub mod dossier;
+pub mod drawn;
 pub mod figure;
 pub mod hash;
 pub mod identity;
@@ -33,6 +36,7 @@ pub mod json;
 pub mod look;
 pub mod markdown;
 pub mod notices;
+pub mod page;
 pub mod proof;
 pub mod purchase;
 pub mod ranking_csv;

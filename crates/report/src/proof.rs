@@ -307,7 +307,21 @@ impl DesignProof {
         let mut found = Vec::new();
         let parts = Parts::find(design, evidence.shop, rail, &mut found);
         let mut proof = match parts {
-            Some(parts) => Self::of_parts(design, &parts, evidence),
+            Some(parts) => Self {
+                name: Some(design.name.clone()),
+                changes: parts
+                    .places()
+                    .iter()
+                    .flat_map(|p| changes(design, p))
+                    .map(change_line)
+                    .collect(),
+                ..Self::of_parts(
+                    &design.file,
+                    &parts,
+                    design.boards.unwrap_or(sheet.boards),
+                    evidence,
+                )
+            },
             None => Self::broken(&design.file, Some(&design.name), &found),
         };
         notices.append(&mut found);
@@ -319,11 +333,11 @@ impl DesignProof {
         proof
     }
 
-    fn of_parts(design: &Design, parts: &Parts<'_>, evidence: &Evidence<'_>) -> Self {
+    /// Checks parts that no design file names: `id` stands where the file's name would.
+    pub fn of_parts(id: &str, parts: &Parts<'_>, boards: u64, evidence: &Evidence<'_>) -> Self {
         let sheet = evidence.sheet;
         let rail = &sheet.rail;
         let places = parts.places();
-        let boards = design.boards.unwrap_or(sheet.boards);
         let verdicts = conditions(parts, sheet, boards);
         let fitted = Fitted::new(parts, rail);
         let at_rail = fitted.and_then(|fitted| Some((fitted, AtRail::new(&fitted, parts, rail)?)));
@@ -346,13 +360,12 @@ impl DesignProof {
             slots: places.iter().map(SlotLine::new).collect(),
             values: Pairs(values(parts, rail)),
             conditions: verdicts.iter().map(|v| condition_line(v, sheet)).collect(),
-            changes: places.iter().flat_map(|p| changes(design, p)).map(change_line).collect(),
             checks,
             assumed: assumed(&figures),
             figures,
             not_checked: not_checked(rail, parts),
             cautions: remark::cautions(rail),
-            ..Self::broken(&design.file, Some(&design.name), &[])
+            ..Self::broken(id, None, &[])
         }
     }
 

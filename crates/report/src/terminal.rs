@@ -3,7 +3,7 @@
 
 mod columns;
 mod layout;
-mod sections;
+pub(crate) mod sections;
 
 use crate::figure::Pairs;
 use crate::look::Look;

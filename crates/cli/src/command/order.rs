@@ -137,5 +137,7 @@ fn in_format(list: &PurchaseList, format: Format) -> Result<Vec<u8>, Fault> {
             workbook::document(&list::document(list)).map_err(|e| Fault::Defect(e.to_string()))
         }
         Format::Md => Ok(markdown::document(&list::document(list)).into_bytes()),
+        // Not among the formats above.
+        Format::Html => Err(Fault::Defect("a purchase list has no page".to_owned())),
     }
 }

@@ -5,6 +5,7 @@ use crate::arguments::{Catalogs, Showing, SpreadLimit};
 use crate::files::{Format, Target, check, folder_of, write_whole};
 use crate::load::Loaded;
 use crate::order_lines::of_candidate;
+use crate::page::{self, Listed};
 use crate::progress::watched;
 use crate::screen::Screen;
 use clap::{Args, ValueEnum};
@@ -57,8 +58,8 @@ pub(crate) struct Arguments {
     /// The design file to save it as
     #[arg(long = "as", id = "as_file", value_name = "FILE", requires = "keep")]
     as_file: Option<PathBuf>,
-    /// Write the list to a file as well: .xlsx and .md with order lines and every check, .csv with the
-    /// ranking, or .json; may be given several times
+    /// Write the list to a file as well: .html with pictures and proofs, .xlsx and .md with order lines and
+    /// every check, .csv with the ranking, or .json; may be given several times
     #[arg(long, value_name = "FILE", value_parser = target)]
     out: Vec<Target>,
     /// The candidate that order lines are for, by its rank or id [default: the first]
@@ -82,7 +83,7 @@ Exit status: 0 where a set of parts holds, 1 where none does or --keep or --pick
 or the command line is at fault.";
 
 /// The formats that are written.
-const FORMATS: [Format; 4] = [Format::Json, Format::Csv, Format::Xlsx, Format::Md];
+const FORMATS: [Format; 5] = [Format::Json, Format::Csv, Format::Xlsx, Format::Md, Format::Html];
 
 fn target(text: &str) -> Result<Target, String> {
     Target::read(text, &FORMATS)
@@ -129,7 +130,9 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     let list = Shortlist::new(loaded.files(), &eligible, &problem, &candidates, asked_for)
         .map_err(|e| Fault::Defect(e.to_string()))?;
 
-    let written = write(arguments, &list, &eligible, &candidates, screen)?;
+    let listed = Listed { list: &list, candidates: &candidates, eligible: &eligible };
+    let in_page = || page::of_list(&listed, loaded, &problem, screen);
+    let written = write(arguments, &listed, &in_page, screen)?;
     let kept = keep(arguments, &list, &eligible, &loaded.sheet_path, screen)?;
     let text = terminal::shortlist(&list, counts.as_ref().map(lost).as_ref(), &screen.data);
     screen.show(&text).map_err(|e| Fault::Defect(format!("standard output: {e}")))?;
@@ -196,11 +199,11 @@ fn counted(
 /// Writes the files that are asked for; No, and no file with order lines, where --pick names no row.
 fn write(
     arguments: &Arguments,
-    list: &Shortlist<'_>,
-    eligible: &Eligible<'_>,
-    candidates: &[Candidate],
+    listed: &Listed<'_>,
+    in_page: &impl Fn() -> Result<Vec<u8>, Fault>,
     screen: &Screen,
 ) -> Result<Answer, Fault> {
+    let Listed { list, candidates, eligible } = *listed;
     let name = arguments.pick.as_deref().unwrap_or("1");
     let picked = list.named(name);
     let mut answer = Answer::Done;
@@ -225,6 +228,7 @@ fn write(
                 workbook::document(&in_tables()).map_err(|e| Fault::Defect(e.to_string()))?
             }
             Format::Md => markdown::document(&in_tables()).into_bytes(),
+            Format::Html => in_page()?,
         };
         write_whole(&target.path, &bytes, arguments.overwrite)?;
         screen.mention(&format!("wrote {}", target.path.display()));

@@ -5,6 +5,7 @@ use crate::arguments::{Catalogs, Showing};
 use crate::desk::{Desk, OnDesk};
 use crate::files::{Format, Target, check, write_whole};
 use crate::order_lines::of_design;
+use crate::page;
 use crate::screen::Screen;
 use clap::Args;
 use report::notices::Warnings;
@@ -34,8 +35,8 @@ pub(crate) struct Arguments {
     /// Set a value of the sheet for this run, for example load.max_a=1.5
     #[arg(long, value_name = "KEY=VALUE")]
     set: Vec<String>,
-    /// Write the proofs to a file as well: .xlsx and .md with order lines, or .json; may be given
-    /// several times
+    /// Write the proofs to a file as well: .html with pictures, .xlsx and .md with order lines, or .json;
+    /// may be given several times
     #[arg(long, value_name = "FILE", value_parser = target)]
     out: Vec<Target>,
     /// Replace files that are there already
@@ -57,7 +58,7 @@ design, its sheet, a catalog or the command line is at fault; other designs are 
 same.";
 
 /// The formats that are written.
-const FORMATS: [Format; 3] = [Format::Json, Format::Xlsx, Format::Md];
+const FORMATS: [Format; 4] = [Format::Json, Format::Xlsx, Format::Md, Format::Html];
 
 fn target(text: &str) -> Result<Target, String> {
     Target::read(text, &FORMATS)
@@ -94,6 +95,7 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     for target in &arguments.out {
         let bytes = match target.format {
             Format::Json => proof::json(&verification).map_err(|e| Fault::Defect(e.to_string()))?,
+            Format::Html => page::of_designs(&verification, &desk, &on_desk, screen)?,
             _ => in_tables(&verification, &desk, &on_desk, target.format)?,
         };
         write_whole(&target.path, &bytes, arguments.overwrite)?;

@@ -2,6 +2,7 @@
 
 #![allow(dead_code)] // each test file uses some of it
 
+pub mod browser;
 pub mod sheets;
 pub mod tool;
 
@@ -51,6 +52,13 @@ pub fn told(output: Output) -> Run {
 pub fn copy_of(name: &str) -> tempfile::TempDir {
     let copy = tempfile::tempdir().expect("a folder");
     copy_folder(&case(name), copy.path());
+    copy
+}
+
+/// A copy of the sample shop with its sheets and designs, to be altered.
+pub fn copy_of_the_sample() -> tempfile::TempDir {
+    let copy = tempfile::tempdir().expect("a folder");
+    copy_folder(&repository("catalogs-sample"), copy.path());
     copy
 }
 

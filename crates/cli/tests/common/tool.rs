@@ -30,6 +30,25 @@ pub fn python_with(test: &str, packages: &[&str]) -> Option<String> {
     absent(test, &format!("{python} with {}", packages.join(", ")))
 }
 
+/// Node with these packages: the program, and the folder of packages that `NODE_PATH` must name, which is
+/// `RAILWRIGHT_NODE_MODULES`. `None` as for [`program`].
+///
+/// # Panics
+///
+/// As [`program`].
+pub fn node_with(test: &str, packages: &[&str]) -> Option<(String, std::path::PathBuf)> {
+    let node = program(test, &["node", "nodejs"])?;
+    let folder = std::env::var_os("RAILWRIGHT_NODE_MODULES").map(std::path::PathBuf::from);
+    let holds_all = |folder: &std::path::PathBuf| packages.iter().all(|p| folder.join(p).is_dir());
+    match folder.filter(holds_all) {
+        Some(folder) => Some((node, folder)),
+        None => {
+            absent(test, &format!("RAILWRIGHT_NODE_MODULES with {}", packages.join(", ")));
+            None
+        }
+    }
+}
+
 fn answers(command: &mut Command) -> bool {
     let quiet = command.stdin(Stdio::null()).stdout(Stdio::null()).stderr(Stdio::null());
     quiet.status().is_ok_and(|status| status.success())

@@ -269,9 +269,18 @@ fn parts(design: &DesignProof, look: &Look) -> String {
     aligned(&rows, look)
 }
 
+/// Conditions of one rule that tell the same.
+pub(crate) struct Alike<'d> {
+    pub(crate) rule: &'static str,
+    pub(crate) holds: bool,
+    pub(crate) told: &'d str,
+    /// Their slots; empty where these are all the conditions of the rule.
+    pub(crate) slots: Vec<&'static str>,
+}
+
 /// A line for each rule, or each part of a rule that tells different things of different parts.
-fn conditions(design: &DesignProof, look: &Look) -> String {
-    let mut rows: Vec<[String; 3]> = Vec::new();
+pub(crate) fn alike(design: &DesignProof) -> Vec<Alike<'_>> {
+    let mut rows = Vec::new();
     for rule in Rule::ALL {
         let lines: Vec<&ConditionLine> =
             design.conditions.iter().filter(|c| c.rule == rule).collect();
@@ -282,14 +291,27 @@ fn conditions(design: &DesignProof, look: &Look) -> String {
             }
         }
         for what in told {
-            let alike: Vec<&&ConditionLine> = lines.iter().filter(|l| l.told == what).collect();
-            let verdict = if alike.iter().all(|l| l.holds) { "holds" } else { "fails" };
-            let slots = alike.iter().map(|l| l.slot).collect::<Vec<_>>().join(", ");
-            let of = if alike.len() == lines.len() { String::new() } else { format!(" ({slots})") };
-            rows.push([format!("  {}", rule.name()), verdict.to_owned(), format!("{what}{of}")]);
+            let same: Vec<&&ConditionLine> = lines.iter().filter(|l| l.told == what).collect();
+            let slots = if same.len() == lines.len() {
+                Vec::new()
+            } else {
+                same.iter().map(|l| l.slot).collect()
+            };
+            let holds = same.iter().all(|l| l.holds);
+            rows.push(Alike { rule: rule.name(), holds, told: what, slots });
         }
     }
-    aligned(&rows, look)
+    rows
+}
+
+fn conditions(design: &DesignProof, look: &Look) -> String {
+    let row = |Alike { rule, holds, told, slots }: Alike<'_>| {
+        let verdict = if holds { "holds" } else { "fails" };
+        let slots = slots.join(", ");
+        let of = if slots.is_empty() { String::new() } else { format!(" ({slots})") };
+        [format!("  {rule}"), verdict.to_owned(), format!("{told}{of}")]
+    };
+    aligned(&alike(design).into_iter().map(row).collect::<Vec<_>>(), look)
 }
 
 fn check(check: &CheckLine, look: &Look) -> String {
@@ -312,7 +334,7 @@ fn utilisation(check: &CheckLine) -> String {
 }
 
 /// `formula = numbers = result`, without what would say the same twice.
-fn worked(expression: &Expression, unit: &str) -> String {
+pub(crate) fn worked(expression: &Expression, unit: &str) -> String {
     let Expression { formula, numbers, result, .. } = expression;
     let result = if unit.is_empty() { result.clone() } else { format!("{result}\u{a0}{unit}") };
     if formula == numbers {
@@ -394,7 +416,7 @@ fn line(figure: &Figure, expression: &Expression, look: &Look) -> String {
 }
 
 /// Where a figure comes from, in words.
-fn origin(origin: &Origin, sheet: &str) -> String {
+pub(crate) fn origin(origin: &Origin, sheet: &str) -> String {
     match origin {
         Origin::Key(key) => key_origin(key, sheet),
         Origin::Cell { column, text } if text.is_empty() => format!("{column} is blank"),

@@ -14,19 +14,23 @@ const INDENT: usize = 2;
 
 /// What is asked for: the rail's name and its main figures.
 pub(super) fn request(list: &Shortlist<'_>, look: &Look) -> String {
-    let mut figures =
-        vec![output(&list.sheet.rail), load(&list.sheet.rail), feed(&list.sheet.rail)];
-    figures.push(match list.boards {
-        1 => "1 board".to_owned(),
-        n => format!("{} boards", grouped(&n.to_string())),
-    });
     let mut text = look.heading(list.rail);
     text.push('\n');
-    text += &look.paragraph(&figures.join(", "), 0, 2);
+    text += &look.paragraph(&asked(list).join(", "), 0, 2);
     if !list.set.is_empty() {
         text += &look.paragraph(&format!("with --set {}", list.set.join(", ")), 0, 2);
     }
     text
+}
+
+/// The main figures of what is asked for.
+pub(crate) fn asked(list: &Shortlist<'_>) -> Vec<String> {
+    let rail = &list.sheet.rail;
+    let boards = match list.boards {
+        1 => "1 board".to_owned(),
+        n => format!("{} boards", grouped(&n.to_string())),
+    };
+    vec![output(rail), load(rail), feed(rail), boards]
 }
 
 fn output(rail: &Rail) -> String {
@@ -57,18 +61,23 @@ fn trimmed(x: f64) -> f64 {
 
 /// How many combinations there are, and what became of them.
 pub(super) fn combinations(list: &Shortlist<'_>, look: &Look) -> String {
-    let combinations = &list.combinations;
-    let covered = grouped(&combinations.covered);
-    let mut text = format!("{covered} combinations covered");
-    match &combinations.feasible {
-        Some(feasible) => text += &format!(", {} of them hold.", grouped(feasible)),
-        None => text += "; --count says how many of them hold.",
-    }
-    let mut text = look.paragraph(&text, 0, 2);
-    if let Some(lost) = &combinations.lost {
+    let mut text = look.paragraph(&covered(list), 0, 2);
+    if let Some(lost) = &list.combinations.lost {
         text += &lost_first_to(lost, look);
     }
     text
+}
+
+/// How many combinations there are, and how many hold where they were counted.
+pub(crate) fn covered(list: &Shortlist<'_>) -> String {
+    let combinations = &list.combinations;
+    let covered = grouped(&combinations.covered);
+    match &combinations.feasible {
+        Some(feasible) => {
+            format!("{covered} combinations covered, {} of them hold.", grouped(feasible))
+        }
+        None => format!("{covered} combinations covered; --count says how many of them hold."),
+    }
 }
 
 fn lost_first_to(lost: &Pairs<&'static str, String>, look: &Look) -> String {
@@ -124,7 +133,7 @@ pub(super) fn trust(list: &Shortlist<'_>, look: &Look) -> String {
 }
 
 /// Each stand-in that rows lean on, with their ranks.
-fn leaned_on(list: &Shortlist<'_>) -> Vec<String> {
+pub(crate) fn leaned_on(list: &Shortlist<'_>) -> Vec<String> {
     let mut stand_ins: Vec<&str> = Vec::new();
     for stand_in in list.candidates.iter().flat_map(|c| &c.assumed) {
         if !stand_ins.contains(stand_in) {
