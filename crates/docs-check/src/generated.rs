@@ -59,6 +59,11 @@ fn part(name: &str, sources: &[Source]) -> io::Result<String> {
         "columns of the catalogs" => Ok(one_level_down(&catalog::reference::reference_markdown())),
         "keys of sheets" => Ok(sheet::reference_markdown()),
         "built-in policies" => Ok(policies()),
+        _ if name.starts_with("columns of ") => {
+            let table = name.trim_start_matches("columns of ");
+            report::reference::columns_markdown(table)
+                .ok_or_else(|| fault(format!("no file has a table by the name `{table}`")))
+        }
         _ => match name.strip_prefix("checks of ") {
             Some(section) => checks(section, sources),
             None => Err(fault(format!("nothing is known by the name `{name}`"))),

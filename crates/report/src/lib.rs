@@ -19,6 +19,7 @@
 //! | [`mod@purchase`] | order lines, and the purchase list over several rails |
 //! | [`table`] | typed tables, and them as CSV and on a terminal |
 //! | [`workbook`], [`markdown`] | typed tables as `.xlsx` and `.md` |
+//! | [`mod@reference`] | the columns of every table, for the documentation |
 //! | [`figure`], [`hash`], [`look`], [`spreadsheet`] | numbers, hashes, text for a terminal, text for a cell |
 //!
 //! This crate computes no check and no ranking. It does not know the argument parser, the terminal
@@ -41,6 +42,7 @@ pub mod proof;
 pub mod purchase;
 pub mod ranking_csv;
 pub mod reasons;
+pub mod reference;
 pub mod remark;
 pub mod shortlist;
 pub mod spreadsheet;
