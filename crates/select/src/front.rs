@@ -4,28 +4,27 @@
 //! independent of each other, and cost, loss and stress are each monotone in what either adds. So only
 //! those reference sides matter that no other beats in cost, current and stress, and only those power
 //! sides that no other beats in cost and stress: few of each, whose pairs are all looked at.
-//! Amplifiers are taken in the order of the best that they could do, and one is left out when
-//! something on the front already beats every pair that it could have.
 //!
-//! *Equal figures.* Of candidates with equal figures the first by name stays. A choice is therefore
-//! only beaten by one that is clearly cheaper or draws clearly less, so that any candidate with it is
-//! beaten for certain, or by one that also comes first by name. A choice that is better in stress
-//! alone does not beat one that comes first by name: another part may set the stress of both.
+//! The same two lists beside the best figures of a box of amplifiers bound every amplifier of the box.
+//! Boxes are taken in the order of the best that they could do, and one is left out when something on
+//! the front already beats every pair that it could have. The lists of a box are made from those of
+//! the box that it is a part of, see [`Unbeaten`].
 
 use crate::candidate::Candidate;
 use crate::company::{ROOT, Sides};
-use crate::grove::{Names, Share};
+use crate::grove::{Names, Node, Share};
 use crate::limit::{self, SearchError};
 use crate::problem::{Ground, Problem};
 use crate::rest::Rest;
 use crate::sides::amplifier::AmplifierMark;
 use crate::sides::{meet_power, meet_reference};
+use crate::unbeaten::{Beside, Choice, Clearly, Unbeaten, by_name};
+use circuit::amplifier::AmplifierAtRail;
 use circuit::merit;
-use circuit::slot::Slot;
 use quantity::digits::{compare, rounded};
 use std::cmp::{Ordering, Reverse};
 use std::collections::BinaryHeap;
-use std::ops::RangeInclusive;
+use std::ops::Range;
 use std::rc::Rc;
 
 /// The front in rank order. Of several candidates with equal figures the first by name stays.
@@ -54,10 +53,10 @@ pub fn front(problem: &Problem<'_>) -> Result<Vec<Candidate>, SearchError> {
 /// A difference of this fraction of a sum shows at ten significant digits.
 const CLEARLY: f64 = 1e-8;
 
-/// A difference that shows at ten digits in the cost of any candidate.
-fn clear_differences(problem: &Problem<'_>) -> Share {
-    fn most(prices: impl Iterator<Item = f64>) -> f64 {
-        prices.fold(0.0, f64::max)
+/// Differences that show at ten digits in the cost and loss of any candidate.
+fn clear_differences(problem: &Problem<'_>) -> Clearly {
+    fn most(figures: impl Iterator<Item = f64>) -> f64 {
+        figures.fold(0.0, f64::max)
     }
     let divider_line = most(problem.divider_lines.iter().map(|p| p.price));
     let cost = most(problem.zeners.iter().map(|p| p.price))
@@ -67,7 +66,12 @@ fn clear_differences(problem: &Problem<'_>) -> Share {
         + most(problem.pots.iter().map(|p| p.price))
         + most(problem.transistors.iter().map(|t| t.part.price))
         + most(problem.heatsinks.iter().map(|s| s.part.price));
-    Share { cost: CLEARLY * cost, current_a: 0.0, stress: 0.0 }
+    let quiescent_a = most(problem.amplifiers.iter().map(|p| p.figures.iq_max_a));
+    Clearly {
+        cost: CLEARLY * cost,
+        fraction_of_current: CLEARLY,
+        drawn_a: problem.rail.load.max_a + quiescent_a,
+    }
 }
 
 /// Cost, loss and stress at ten digits, with the places by name in the order of the ranking.
@@ -92,67 +96,88 @@ impl Figures {
     }
 }
 
-/// A choice of one side beside a given amplifier.
-#[derive(Debug, Clone, Copy)]
-struct Choice {
-    node: u32,
-    share: Share,
-    names: Names,
+type AmplifierNode = Node<AmplifierAtRail, AmplifierMark>;
+
+/// The power sides beside an amplifier node.
+struct Powers<'g, 'p> {
+    ground: &'g Ground<'p>,
+    amp: AmplifierNode,
 }
 
-impl Choice {
-    /// Every candidate with the other is beaten by one with this in its place.
-    fn beats(&self, other: &Choice, clearly: &Share) -> bool {
-        let (a, b) = (&self.share, &other.share);
-        let no_worse = a.cost <= b.cost && a.current_a <= b.current_a && a.stress <= b.stress;
-        no_worse
-            && (b.cost - a.cost > clearly.cost
-                || b.current_a - a.current_a > clearly.current_a
-                || by_name(&self.names) < by_name(&other.names))
+impl Beside for Powers<'_, '_> {
+    fn least_stress(&self) -> f64 {
+        self.amp.share.stress
+    }
+
+    fn choice(&self, sides: &Sides<'_, '_>, id: u32) -> Option<Choice> {
+        let node = sides.powers.get(id);
+        let meeting = meet_power(self.ground, &self.amp.figures, &node.figures)?;
+        choice(id, &node.share, node.names, meeting.max(self.least_stress()))
+    }
+
+    fn shares<'s>(&self, sides: &'s Sides<'_, '_>, id: u32) -> &'s [Share] {
+        sides.powers.shares(id)
+    }
+
+    fn is_made(&self, sides: &Sides<'_, '_>, id: u32) -> bool {
+        sides.powers.get(id).size == 1
+    }
+
+    fn parts(&self, sides: &mut Sides<'_, '_>, id: u32) -> Range<u32> {
+        sides.power_parts(id)
     }
 }
 
-/// Places by name in the order of the ranking.
-fn by_name(names: &Names) -> Names {
-    Slot::BY_NAME.map(|slot| names[slot as usize])
+/// The reference sides beside an amplifier node. Stress below the least of any power side is of no use.
+struct References<'g, 'p> {
+    ground: &'g Ground<'p>,
+    amp: AmplifierNode,
+    least_stress: f64,
 }
 
-/// A choice on its way: the cheapest first, then by current, stress and name.
-#[derive(Clone, Copy)]
-struct Waiting(Choice);
+impl Beside for References<'_, '_> {
+    fn least_stress(&self) -> f64 {
+        self.least_stress
+    }
 
-impl Ord for Waiting {
-    fn cmp(&self, other: &Self) -> Ordering {
-        let (a, b) = (&self.0, &other.0);
-        let (x, y) = (&a.share, &b.share);
-        x.cost
-            .total_cmp(&y.cost)
-            .then_with(|| x.current_a.total_cmp(&y.current_a))
-            .then_with(|| x.stress.total_cmp(&y.stress))
-            .then_with(|| by_name(&a.names).cmp(&by_name(&b.names)))
-            .then_with(|| a.node.cmp(&b.node))
+    fn choice(&self, sides: &Sides<'_, '_>, id: u32) -> Option<Choice> {
+        let node = sides.references.get(id);
+        let meeting = meet_reference(self.ground, &node.figures, &self.amp.figures)?;
+        choice(id, &node.share, node.names, meeting.max(self.least_stress))
+    }
+
+    fn shares<'s>(&self, sides: &'s Sides<'_, '_>, id: u32) -> &'s [Share] {
+        sides.references.shares(id)
+    }
+
+    fn is_made(&self, sides: &Sides<'_, '_>, id: u32) -> bool {
+        sides.references.get(id).size == 1
+    }
+
+    fn parts(&self, sides: &mut Sides<'_, '_>, id: u32) -> Range<u32> {
+        sides.reference_parts(id)
     }
 }
 
-impl PartialOrd for Waiting {
-    fn partial_cmp(&self, other: &Self) -> Option<Ordering> {
-        Some(self.cmp(other))
-    }
+fn choice(node: u32, share: &Share, names: Names, stress: f64) -> Option<Choice> {
+    let stress = share.stress.max(stress);
+    (!share.is_impossible()).then_some(Choice { node, share: Share { stress, ..*share }, names })
 }
 
-impl PartialEq for Waiting {
-    fn eq(&self, other: &Self) -> bool {
-        self.cmp(other) == Ordering::Equal
-    }
+/// The reference and power sides that matter beside an amplifier node.
+struct Company {
+    references: Unbeaten,
+    powers: Unbeaten,
+    /// What a reference and a power side add together, of the pairs that are not beaten.
+    pairs: Rest,
 }
 
-impl Eq for Waiting {}
-
-/// An amplifier node with the least score, at even weights, that it could have part in.
+/// An amplifier node with the company of the node that it is a part of, and the least score, at even
+/// weights, that it could have part in.
 struct Promising {
     least: f64,
     node: u32,
-    company: Rc<Rest>,
+    company: Rc<Company>,
 }
 
 impl Ord for Promising {
@@ -175,9 +200,6 @@ impl PartialEq for Promising {
 
 impl Eq for Promising {}
 
-/// A box of so many amplifiers is given a company of its own: once on the way down to each.
-const CLOSER_LOOK: RangeInclusive<u32> = 24..=47;
-
 struct Found {
     figures: Figures,
     candidate: Candidate,
@@ -186,8 +208,7 @@ struct Found {
 struct Survey<'g, 'p> {
     ground: &'g Ground<'p>,
     sides: Sides<'g, 'p>,
-    /// Differences that show at ten digits in any candidate's cost.
-    clearly: Share,
+    clearly: Clearly,
     found: Vec<Found>,
 }
 
@@ -196,9 +217,9 @@ impl Survey<'_, '_> {
         if self.sides.roots().is_none() {
             return Ok(());
         }
-        let company = self.best_company(ROOT)?;
+        let all = Rc::new(self.company(ROOT, None)?);
         let mut waiting = BinaryHeap::new();
-        waiting.extend(self.promise(ROOT, &company).map(Reverse));
+        waiting.extend(self.promise(ROOT, &all).map(Reverse));
         while let Some(Reverse(Promising { least, node, company })) = waiting.pop() {
             // More may be found since.
             let Some(now) = self.promise(node, &company) else { continue };
@@ -206,41 +227,60 @@ impl Survey<'_, '_> {
                 waiting.push(Reverse(now));
                 continue;
             }
+            let company = Rc::new(self.company(node, Some(&company))?);
             if let AmplifierMark::One(_) = self.sides.amplifiers.get(node).mark {
-                self.pair_off(node)?;
+                self.pair_off(node, &company);
             } else {
-                let size = self.sides.amplifiers.get(node).size;
-                let company =
-                    if CLOSER_LOOK.contains(&size) { self.best_company(node)? } else { company };
                 for part in self.sides.amplifier_parts(node) {
                     waiting.extend(self.promise(part, &company).map(Reverse));
                 }
             }
-            self.check_memory(waiting.len())?;
+            limit::check(self.sides.memory(), waiting.len())?;
         }
         Ok(())
     }
 
-    fn check_memory(&self, waiting: usize) -> Result<(), SearchError> {
-        let in_use = waiting * size_of::<Waiting>() + self.sides.memory();
-        limit::check(in_use, waiting)
-    }
-
-    /// What reference and power sides together add at least beside any amplifier of a node: the pairs of
-    /// those that nothing beats beside the best figures of the node. Whatever suits one amplifier suits
-    /// those figures, with no more stress, so one of the pairs is at least as good.
-    fn best_company(&mut self, node: u32) -> Result<Rc<Rest>, SearchError> {
+    /// The reference and power sides that nothing beats beside the best figures of an amplifier node,
+    /// made from the company of a node that it is a part of. Whatever suits one amplifier suits those
+    /// figures, with no more stress.
+    fn company(&mut self, node: u32, above: Option<&Company>) -> Result<Company, SearchError> {
         /// So many pairs are kept apart: an amplifier costs much more to look into than to bound.
         const MOST: usize = 512;
-        let powers = self.powers_beside(node)?;
-        let least = powers.iter().map(|p| p.share.stress).fold(f64::INFINITY, f64::min);
-        let references = self.references_beside(node, least)?;
-        let pairs = references.iter().flat_map(|r| powers.iter().map(|p| r.share.beside(&p.share)));
-        Ok(Rc::new(Rest::of_at_most(pairs, MOST)))
+        let amp = *self.sides.amplifiers.get(node);
+        let Self { ground, sides, clearly, found } = self;
+        let is_beaten = |reference: &Choice, power: &Choice| {
+            let figures = least_figures(ground, &amp, reference, power);
+            found.iter().any(|f| f.figures.beats(&figures))
+        };
+        let powers = Unbeaten::beside(
+            sides,
+            &Powers { ground, amp },
+            above.map(|above| &above.powers),
+            clearly,
+            |power| {
+                above.is_some_and(|above| above.references.choices().all(|r| is_beaten(r, power)))
+            },
+        )?;
+        let least_stress =
+            powers.choices().map(|power| power.share.stress).fold(f64::INFINITY, f64::min);
+        let references = Unbeaten::beside(
+            sides,
+            &References { ground, amp, least_stress },
+            above.map(|above| &above.references),
+            clearly,
+            |reference| powers.choices().all(|power| is_beaten(reference, power)),
+        )?;
+        let pairs = references
+            .choices()
+            .flat_map(|r| powers.choices().map(move |p| (r, p)))
+            .filter(|(r, p)| !is_beaten(r, p))
+            .map(|(r, p)| r.share.beside(&p.share));
+        let pairs = Rest::of_at_most(pairs, MOST);
+        Ok(Company { references, powers, pairs })
     }
 
     /// What an amplifier node could do at best; None where all of it is beaten.
-    fn promise(&self, node: u32, company: &Rc<Rest>) -> Option<Promising> {
+    fn promise(&self, node: u32, company: &Rc<Company>) -> Option<Promising> {
         let amplifier = self.sides.amplifiers.get(node);
         let root = self.sides.references.get(ROOT);
         let power = self.sides.powers.get(ROOT);
@@ -250,26 +290,14 @@ impl Survey<'_, '_> {
         meet_power(self.ground, &amplifier.figures, &power.figures)?;
         meet_reference(self.ground, &root.figures, &amplifier.figures)?;
         let mut least: Option<f64> = None;
-        for share in company.shares() {
-            let together = share.beside(&amplifier.share);
-            let figures = self.figures(&together, names);
-            if !self.is_beaten(&figures) {
-                let score = figures.cost * figures.loss * figures.stress;
-                least = Some(least.map_or(score, |l| l.min(score)));
+        for share in company.pairs.shares() {
+            let figures = figures(self.ground, &share.beside(&amplifier.share), names);
+            let score = figures.cost * figures.loss * figures.stress;
+            if least.is_none_or(|least| score < least) && !self.is_beaten(&figures) {
+                least = Some(score);
             }
         }
         least.map(|least| Promising { least, node, company: Rc::clone(company) })
-    }
-
-    fn figures(&self, share: &Share, names: Names) -> Figures {
-        // Sums made in another order than a candidate's may differ in the last bits.
-        const LAST_BITS: f64 = 1.0 - 1e-14;
-        Figures {
-            cost: rounded(share.cost * LAST_BITS),
-            loss: rounded(merit::loss(self.ground.rail(), share.current_a) * LAST_BITS),
-            stress: rounded(share.stress),
-            names: by_name(&names),
-        }
     }
 
     fn is_beaten(&self, figures: &Figures) -> bool {
@@ -277,16 +305,10 @@ impl Survey<'_, '_> {
     }
 
     /// All pairs of the reference and power sides that matter beside an amplifier.
-    fn pair_off(&mut self, amplifier: u32) -> Result<(), SearchError> {
-        let powers = self.powers_beside(amplifier)?;
-        let Some(least_stress) = powers.iter().map(|p| p.share.stress).min_by(f64::total_cmp)
-        else {
-            return Ok(());
-        };
-        let references = self.references_beside(amplifier, least_stress)?;
+    fn pair_off(&mut self, amplifier: u32, company: &Company) {
         let amp = *self.sides.amplifiers.get(amplifier);
-        for p in &powers {
-            for r in &references {
+        for p in company.powers.choices() {
+            for r in company.references.choices() {
                 let nodes = [r.node, amplifier, p.node];
                 let meeting = r.share.stress.max(p.share.stress);
                 let Some(candidate) = self.sides.candidate(nodes, meeting) else { continue };
@@ -304,84 +326,29 @@ impl Survey<'_, '_> {
                 }
             }
         }
-        Ok(())
     }
+}
 
-    /// The power sides that an amplifier drives and no other beats beside it.
-    fn powers_beside(&mut self, amplifier: u32) -> Result<Vec<Choice>, SearchError> {
-        let amp = *self.sides.amplifiers.get(amplifier);
-        let (ground, clearly) = (self.ground, self.clearly);
-        let mut waiting = BinaryHeap::new();
-        let mut kept: Vec<Choice> = Vec::new();
-        let choice = |sides: &Sides<'_, '_>, id: u32| {
-            let node = sides.powers.get(id);
-            let meeting = meet_power(ground, &amp.figures, &node.figures)?;
-            let stress = node.share.stress.max(amp.share.stress).max(meeting);
-            (!node.share.is_impossible()).then_some(Waiting(Choice {
-                node: id,
-                share: Share { stress, ..node.share },
-                names: node.names,
-            }))
-        };
-        waiting.extend(choice(&self.sides, ROOT).map(Reverse));
-        while let Some(Reverse(Waiting(next))) = waiting.pop() {
-            if kept.iter().any(|k| k.beats(&next, &clearly)) {
-                continue;
-            }
-            if self.sides.powers.get(next.node).size == 1 {
-                kept.push(next);
-                continue;
-            }
-            for part in self.sides.power_parts(next.node) {
-                waiting.extend(choice(&self.sides, part).map(Reverse));
-            }
-            self.check_memory(waiting.len())?;
-        }
-        Ok(kept)
-    }
+/// At most the figures of any candidate of an amplifier node beside these choices.
+fn least_figures(
+    ground: &Ground<'_>,
+    amp: &AmplifierNode,
+    reference: &Choice,
+    power: &Choice,
+) -> Figures {
+    let names =
+        std::array::from_fn(|slot| reference.names[slot] + amp.names[slot] + power.names[slot]);
+    figures(ground, &reference.share.beside(&power.share).beside(&amp.share), names)
+}
 
-    /// The reference sides that suit an amplifier and no other beats beside it, where stress below
-    /// `least_stress` is of no use.
-    fn references_beside(
-        &mut self,
-        amplifier: u32,
-        least_stress: f64,
-    ) -> Result<Vec<Choice>, SearchError> {
-        let amp = *self.sides.amplifiers.get(amplifier);
-        let ground = self.ground;
-        let mut waiting = BinaryHeap::new();
-        let mut kept: Vec<Choice> = Vec::new();
-        let choice = |sides: &Sides<'_, '_>, id: u32| {
-            let node = sides.references.get(id);
-            let meeting = meet_reference(ground, &node.figures, &amp.figures)?;
-            let stress = node.share.stress.max(meeting).max(least_stress);
-            (!node.share.is_impossible()).then_some(Waiting(Choice {
-                node: id,
-                share: Share { stress, ..node.share },
-                names: node.names,
-            }))
-        };
-        // Beside this current a difference of current has to show in the loss.
-        let drawn_a = ground.rail().load.max_a + amp.share.current_a;
-        let clear_differences = self.clearly;
-        waiting.extend(choice(&self.sides, ROOT).map(Reverse));
-        while let Some(Reverse(Waiting(next))) = waiting.pop() {
-            let clearly = Share {
-                current_a: CLEARLY * (drawn_a + next.share.current_a),
-                ..clear_differences
-            };
-            if kept.iter().any(|k| k.beats(&next, &clearly)) {
-                continue;
-            }
-            if self.sides.references.get(next.node).size == 1 {
-                kept.push(next);
-                continue;
-            }
-            for part in self.sides.reference_parts(next.node) {
-                waiting.extend(choice(&self.sides, part).map(Reverse));
-            }
-            self.check_memory(waiting.len())?;
-        }
-        Ok(kept)
+/// At most the figures of any candidate that adds these shares, with these names or later ones.
+fn figures(ground: &Ground<'_>, share: &Share, names: Names) -> Figures {
+    // Sums made in another order than a candidate's may differ in the last bits.
+    const LAST_BITS: f64 = 1.0 - 1e-14;
+    Figures {
+        cost: rounded(share.cost * LAST_BITS),
+        loss: rounded(merit::loss(ground.rail(), share.current_a) * LAST_BITS),
+        stress: rounded(share.stress),
+        names: by_name(&names),
     }
 }

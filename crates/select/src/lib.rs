@@ -32,5 +32,6 @@ pub mod score;
 mod search;
 mod sides;
 mod spread;
+mod unbeaten;
 
 pub use limit::SearchError;

@@ -9,7 +9,7 @@ use select::ranking::{NO_SPREAD, Spread, shortlist, spread_out};
 use std::collections::BTreeMap;
 use twin::alike::{Listed, counts_alike, ranks_alike};
 use twin::plain::{Plain, PlainCandidate, front, spread};
-use twin::shops::{RandomShop, shops};
+use twin::shops::{RandomShop, Sizes, shops};
 
 /// Shops of the long run, by seed from 0.
 const SEEDS: u64 = 3_000;
@@ -86,6 +86,38 @@ fn search_finds_what_trying_every_combination_finds() {
         feasible += u64::from(found > 0);
     }
     assert!(feasible * 5 > SEEDS, "only {feasible} of {SEEDS} shops have a candidate");
+}
+
+/// Many amplifiers, of which each refuses some references; many pots, of which many serve. Boxes of
+/// amplifiers then fall into boxes, and pots are taken a few at a time.
+#[test]
+fn the_front_of_many_amplifiers_and_pots_is_what_trying_every_combination_finds() {
+    let sizes = Sizes {
+        zeners: 4,
+        bias_lines: 2,
+        amplifiers: 20,
+        divider_lines: 2,
+        pots: 14,
+        transistors: 4,
+        heatsinks: 2,
+    };
+    let (mut longest, mut adjustable) = (0, 0);
+    for seed in 0..SEEDS / 15 {
+        let shop = RandomShop::new(seed, sizes);
+        let problem = shop.problem();
+        let plain = Plain::new(&problem);
+        let plain_front = front(&problem, &plain.ranked);
+        let quick_front = select::front::front(&problem).expect("small shops fit in memory");
+        ranks_alike(&plain_front, listed(&quick_front))
+            .unwrap_or_else(|d| panic!("seed {seed}, front: {d}"));
+        let list = shortlist(&problem, 12, &NO_SPREAD).expect("small shops fit in memory");
+        ranks_alike(plain.top(12), listed(&list))
+            .unwrap_or_else(|d| panic!("seed {seed}, first rows: {d}"));
+        longest = longest.max(quick_front.len());
+        adjustable += usize::from(problem.rail.is_adjustable() && quick_front.len() > 3);
+    }
+    assert!(longest > 12, "the longest front has {longest} rows");
+    assert!(adjustable > 10, "only {adjustable} adjustable rails have a front worth the name");
 }
 
 #[test]

@@ -4,6 +4,7 @@ use crate::boxes::{Boxes, Item, Pieces};
 use crate::grove::{Growth, Names, Node, Share, Slots};
 use crate::problem::Ground;
 use crate::sides::amplifier::AmplifierSide;
+use crate::sides::meet_reference;
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::{PotSpan, choose_divider, may_hold};
 use circuit::divider::{Divider, nominal_current_a};
@@ -122,6 +123,18 @@ struct Biased {
     pots: Option<Arc<[PotRow]>>,
 }
 
+/// Of the pots that may serve beside a biased zener and a divider line, the dearer ones.
+#[derive(Clone, Copy)]
+pub(crate) struct PotsLeft {
+    /// Place among the biased.
+    biased: u32,
+    line: u32,
+    /// The cheapest of them: its place in the list of the biased zener.
+    from: u32,
+    /// How many cheaper ones have been taken.
+    taken: u32,
+}
+
 /// What a reference node stands for.
 #[derive(Clone, Copy)]
 pub(crate) enum ReferenceMark {
@@ -131,8 +144,8 @@ pub(crate) enum ReferenceMark {
     Zener(u32),
     /// A zener with its RZ (place among the biased).
     Biased(u32),
-    /// The same with a divider line, and of the pots that may serve those from a place on.
-    Pots(u32, u32, u32),
+    /// The same with a divider line, and some of the pots that may serve.
+    Pots(PotsLeft),
     /// All values chosen.
     Done,
 }
@@ -363,8 +376,11 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
         let lines = 0..self.ground.divider_lines.len() as u32;
         if self.ground.rail().is_adjustable() {
             let pots = self.pots_of(biased);
-            children
-                .extend(lines.filter_map(|line| self.pots_node(node, &pots, (biased, line, 0))));
+            children.extend(lines.filter_map(|line| {
+                let all = PotsLeft { biased, line, from: 0, taken: 0 };
+                let from = self.first_serving(&pots, &all)?;
+                self.pots_node(node, &pots, PotsLeft { from, ..all })
+            }));
         } else {
             children.extend(lines.filter_map(|line| self.complete(node, biased, line, None)));
         }
@@ -398,27 +414,37 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
         Arc::clone(rows)
     }
 
-    /// The pots from the first one that may hold on; None behind the last.
-    fn pots_node(
-        &self,
-        node: &ReferenceNode,
-        pots: &[PotRow],
-        (biased, line, from): (u32, u32, u32),
-    ) -> Option<ReferenceNode> {
+    /// The first place from `from` on of a pot that may hold; None behind the last.
+    fn first_serving(&self, pots: &[PotRow], left: &PotsLeft) -> Option<u32> {
         let ground = self.ground;
-        let Biased { bias, share_without_divider: without, .. } = &self.biased[biased as usize];
+        let bias = &self.biased[left.biased as usize].bias;
         let best = self.best_amplifier.as_ref()?;
-        let at_rail = &ground.divider_lines[line as usize];
-        let volts = (bias.vz_lo_v, bias.vz_hi_v);
-        let span = pot_span(ground, volts, best, at_rail.spread())?;
+        let line = &ground.divider_lines[left.line as usize];
+        let span = pot_span(ground, (bias.vz_lo_v, bias.vz_hi_v), best, line.spread())?;
         let input = best.input_error(bias.vz_hi_v);
         let holds = |row: &PotRow| {
             let pot = &ground.pots[row.index as usize];
             span.may_serve(pot)
-                && may_hold(&ground.aim, bias, at_rail, Some(pot), input, ground.rail())
+                && may_hold(&ground.aim, bias, line, Some(pot), input, ground.rail())
         };
-        let place = from + pots.get(from as usize..)?.iter().position(holds)? as u32;
-        let first = &pots[place as usize];
+        let ahead = pots.get(left.from as usize..)?.iter().position(holds)?;
+        Some(left.from + ahead as u32)
+    }
+
+    /// The pots left, of which the first may hold.
+    fn pots_node(
+        &self,
+        node: &ReferenceNode,
+        pots: &[PotRow],
+        left: PotsLeft,
+    ) -> Option<ReferenceNode> {
+        let ground = self.ground;
+        let PotsLeft { biased, line, from, .. } = left;
+        let Biased { bias, share_without_divider: without, .. } = &self.biased[biased as usize];
+        let at_rail = &ground.divider_lines[line as usize];
+        let volts = (bias.vz_lo_v, bias.vz_hi_v);
+        let span = pot_span(ground, volts, self.best_amplifier.as_ref()?, at_rail.spread())?;
+        let first = pots.get(from as usize)?;
         let price = ground.problem.pots[first.index as usize].price;
         let line_price = ground.problem.divider_lines[line as usize].price;
         let pieces = if ground.aim.may_follow(bias.vz_lo_v, bias.vz_hi_v) { 1.0 } else { 2.0 };
@@ -436,25 +462,34 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
             figures: node.figures,
             names,
             decided: node.decided.with(Slot::DividerLine),
-            size: (pots.len() as u32 - place).max(2),
-            mark: ReferenceMark::Pots(biased, line, place),
+            size: (pots.len() as u32 - from).max(2),
+            mark: ReferenceMark::Pots(left),
         })
     }
 
-    /// The pot at a place, and those behind it.
-    fn next_pot(
-        &mut self,
+    /// The cheapest of the pots left, as many as were taken before, and a node for those behind them:
+    /// a few at first, for a list needs few, and a short chain of nodes where a thousand serve.
+    fn next_pots(
+        &self,
         node: &ReferenceNode,
-        (biased, line, place): (u32, u32, u32),
+        mut left: PotsLeft,
         children: &mut Vec<ReferenceNode>,
     ) {
-        let pots = self.pots_of(biased);
-        let Some(row) = pots.get(place as usize) else { return };
-        children.extend(self.complete(node, biased, line, Some(row.index)));
-        children.extend(self.pots_node(node, &pots, (biased, line, place + 1)));
+        let Some(pots) = self.biased[left.biased as usize].pots.as_deref() else { return };
+        for _ in 0..left.taken.max(1) {
+            let Some(row) = pots.get(left.from as usize) else { return };
+            children.extend(self.complete(node, left.biased, left.line, Some(row.index)));
+            left.taken += 1;
+            left.from += 1;
+            let Some(from) = self.first_serving(pots, &left) else { return };
+            left.from = from;
+        }
+        children.extend(self.pots_node(node, pots, left));
     }
 
-    /// All values chosen; None where no value of the line lies in the divider's window.
+    /// All values chosen; None where no value of the line lies in the divider's window, or where it does
+    /// not even suit the best figures of all amplifiers. Stress beside those is part of its share, for
+    /// beside any amplifier it is at least as much.
     fn complete(
         &self,
         node: &ReferenceNode,
@@ -472,7 +507,17 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
             pot.map(|p| &ground.pots[p as usize]),
             ground.rail(),
         );
-        let divider = choice.divider()?;
+        let complete = CompleteReference {
+            zener: self.boxes.items()[*item as usize].index,
+            bias_line: *bias_line,
+            bias: *bias,
+            divider_line: line,
+            divider: choice.divider()?,
+            pot,
+        };
+        let figures = ReferenceFigures::Complete(complete);
+        let meeting = meet_reference(ground, &figures, self.best_amplifier.as_ref()?)?;
+        let divider = &complete.divider;
         let pot_price = pot.map_or(0.0, |p| ground.problem.pots[p as usize].price);
         let line_price = ground.problem.divider_lines[line as usize].price;
         let mut names = node.names;
@@ -480,18 +525,11 @@ impl<'g, 'p> ReferenceSide<'g, 'p> {
         names[Slot::Pot as usize] = pot.map_or(0, |p| ground.ranks.of(Slot::Pot, p as usize));
         Some(Node {
             share: Share {
-                cost: without.cost + pieces(&divider) * line_price + pot_price,
-                current_a: without.current_a + nominal_current_a(bias, &divider),
-                stress: without.stress,
+                cost: without.cost + pieces(divider) * line_price + pot_price,
+                current_a: without.current_a + nominal_current_a(bias, divider),
+                stress: without.stress.max(meeting),
             },
-            figures: ReferenceFigures::Complete(CompleteReference {
-                zener: self.boxes.items()[*item as usize].index,
-                bias_line: *bias_line,
-                bias: *bias,
-                divider_line: line,
-                divider,
-                pot,
-            }),
+            figures,
             names,
             decided: node.decided.with(Slot::DividerLine).with(Slot::Pot),
             size: 1,
@@ -516,9 +554,7 @@ impl Growth for ReferenceSide<'_, '_> {
             },
             ReferenceMark::Zener(item) => self.bias_lines(item, children),
             ReferenceMark::Biased(biased) => self.divider_lines(node, biased, children),
-            ReferenceMark::Pots(biased, line, place) => {
-                self.next_pot(node, (biased, line, place), children);
-            }
+            ReferenceMark::Pots(left) => self.next_pots(node, left, children),
             ReferenceMark::Done => {}
         }
     }
