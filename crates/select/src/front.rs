@@ -10,21 +10,20 @@
 //! the front already beats every pair that it could have. The lists of a box are made from those of
 //! the box that it is a part of, see [`Unbeaten`].
 
+use crate::beside::{AmplifierNode, Powers, References};
 use crate::candidate::Candidate;
 use crate::company::{ROOT, Sides};
-use crate::grove::{Names, Node, Share};
+use crate::grove::{Names, Share};
 use crate::limit::{self, SearchError};
 use crate::problem::{Ground, Problem};
 use crate::rest::Rest;
 use crate::sides::amplifier::AmplifierMark;
 use crate::sides::{meet_power, meet_reference};
-use crate::unbeaten::{Beside, Choice, Clearly, Unbeaten, by_name};
-use circuit::amplifier::AmplifierAtRail;
+use crate::unbeaten::{Choice, Clearly, Unbeaten, by_name};
 use circuit::merit;
 use quantity::digits::{compare, rounded};
 use std::cmp::{Ordering, Reverse};
 use std::collections::BinaryHeap;
-use std::ops::Range;
 use std::rc::Rc;
 
 /// The front in rank order. Of several candidates with equal figures the first by name stays.
@@ -36,7 +35,7 @@ pub fn front(problem: &Problem<'_>) -> Result<Vec<Candidate>, SearchError> {
     let mut survey = Survey {
         ground: &ground,
         sides: Sides::new(&ground),
-        clearly: clear_differences(problem),
+        clearly: Clearly::of(problem),
         found: Vec::new(),
     };
     survey.run()?;
@@ -48,30 +47,6 @@ pub fn front(problem: &Problem<'_>) -> Result<Vec<Candidate>, SearchError> {
             .then_with(|| compare(a.loss, b.loss))
     });
     Ok(front)
-}
-
-/// A difference of this fraction of a sum shows at ten significant digits.
-const CLEARLY: f64 = 1e-8;
-
-/// Differences that show at ten digits in the cost and loss of any candidate.
-fn clear_differences(problem: &Problem<'_>) -> Clearly {
-    fn most(figures: impl Iterator<Item = f64>) -> f64 {
-        figures.fold(0.0, f64::max)
-    }
-    let divider_line = most(problem.divider_lines.iter().map(|p| p.price));
-    let cost = most(problem.zeners.iter().map(|p| p.price))
-        + most(problem.bias_lines.iter().map(|p| p.price))
-        + most(problem.amplifiers.iter().map(|p| p.price))
-        + 2.0 * divider_line
-        + most(problem.pots.iter().map(|p| p.price))
-        + most(problem.transistors.iter().map(|t| t.part.price))
-        + most(problem.heatsinks.iter().map(|s| s.part.price));
-    let quiescent_a = most(problem.amplifiers.iter().map(|p| p.figures.iq_max_a));
-    Clearly {
-        cost: CLEARLY * cost,
-        fraction_of_current: CLEARLY,
-        drawn_a: problem.rail.load.max_a + quiescent_a,
-    }
 }
 
 /// Cost, loss and stress at ten digits, with the places by name in the order of the ranking.
@@ -94,74 +69,6 @@ impl Figures {
                 || self.stress < other.stress
                 || self.names < other.names)
     }
-}
-
-type AmplifierNode = Node<AmplifierAtRail, AmplifierMark>;
-
-/// The power sides beside an amplifier node.
-struct Powers<'g, 'p> {
-    ground: &'g Ground<'p>,
-    amp: AmplifierNode,
-}
-
-impl Beside for Powers<'_, '_> {
-    fn least_stress(&self) -> f64 {
-        self.amp.share.stress
-    }
-
-    fn choice(&self, sides: &Sides<'_, '_>, id: u32) -> Option<Choice> {
-        let node = sides.powers.get(id);
-        let meeting = meet_power(self.ground, &self.amp.figures, &node.figures)?;
-        choice(id, &node.share, node.names, meeting.max(self.least_stress()))
-    }
-
-    fn shares<'s>(&self, sides: &'s Sides<'_, '_>, id: u32) -> &'s [Share] {
-        sides.powers.shares(id)
-    }
-
-    fn is_made(&self, sides: &Sides<'_, '_>, id: u32) -> bool {
-        sides.powers.get(id).size == 1
-    }
-
-    fn parts(&self, sides: &mut Sides<'_, '_>, id: u32) -> Range<u32> {
-        sides.power_parts(id)
-    }
-}
-
-/// The reference sides beside an amplifier node. Stress below the least of any power side is of no use.
-struct References<'g, 'p> {
-    ground: &'g Ground<'p>,
-    amp: AmplifierNode,
-    least_stress: f64,
-}
-
-impl Beside for References<'_, '_> {
-    fn least_stress(&self) -> f64 {
-        self.least_stress
-    }
-
-    fn choice(&self, sides: &Sides<'_, '_>, id: u32) -> Option<Choice> {
-        let node = sides.references.get(id);
-        let meeting = meet_reference(self.ground, &node.figures, &self.amp.figures)?;
-        choice(id, &node.share, node.names, meeting.max(self.least_stress))
-    }
-
-    fn shares<'s>(&self, sides: &'s Sides<'_, '_>, id: u32) -> &'s [Share] {
-        sides.references.shares(id)
-    }
-
-    fn is_made(&self, sides: &Sides<'_, '_>, id: u32) -> bool {
-        sides.references.get(id).size == 1
-    }
-
-    fn parts(&self, sides: &mut Sides<'_, '_>, id: u32) -> Range<u32> {
-        sides.reference_parts(id)
-    }
-}
-
-fn choice(node: u32, share: &Share, names: Names, stress: f64) -> Option<Choice> {
-    let stress = share.stress.max(stress);
-    (!share.is_impossible()).then_some(Choice { node, share: Share { stress, ..*share }, names })
 }
 
 /// The reference and power sides that matter beside an amplifier node.

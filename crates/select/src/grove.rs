@@ -203,6 +203,11 @@ impl<G: Growth> Grove<G> {
         &self.nodes[id as usize]
     }
 
+    /// The node that a node is a part of; None for all choices.
+    pub fn parent(&self, id: u32) -> Option<u32> {
+        self.links[id as usize].parent
+    }
+
     /// The parts of a node. They are made on the first call, and those for which `stands` is false
     /// are left out: no feasible candidate has them.
     pub fn children(

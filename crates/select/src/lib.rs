@@ -18,6 +18,7 @@
 //!
 //! This crate knows no files and prints nothing.
 
+mod beside;
 mod boxes;
 pub mod candidate;
 mod company;
@@ -32,6 +33,7 @@ pub mod score;
 mod search;
 mod sides;
 mod spread;
+mod suited;
 mod unbeaten;
 
 pub use limit::SearchError;

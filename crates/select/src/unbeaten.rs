@@ -5,13 +5,14 @@
 //! node nothing is walked again but what was cut off by choices that count for less beside the part:
 //! most of them count as much beside every amplifier.
 
+use crate::beside::Beside;
 use crate::company::{ROOT, Sides};
 use crate::grove::{Names, Share};
 use crate::limit::{self, SearchError};
+use crate::problem::Problem;
 use circuit::slot::Slot;
 use std::cmp::{Ordering, Reverse};
 use std::collections::BinaryHeap;
-use std::ops::Range;
 use std::rc::Rc;
 
 /// A choice of one side, or a node of choices, beside amplifiers.
@@ -31,6 +32,32 @@ pub(crate) struct Clearly {
     pub fraction_of_current: f64,
     /// At least what a candidate draws without its reference, A.
     pub drawn_a: f64,
+}
+
+/// A difference of this fraction of a sum shows at ten significant digits.
+const CLEARLY: f64 = 1e-8;
+
+impl Clearly {
+    /// Differences that show at ten digits in the cost and loss of any candidate.
+    pub fn of(problem: &Problem<'_>) -> Self {
+        fn most(figures: impl Iterator<Item = f64>) -> f64 {
+            figures.fold(0.0, f64::max)
+        }
+        let divider_line = most(problem.divider_lines.iter().map(|p| p.price));
+        let cost = most(problem.zeners.iter().map(|p| p.price))
+            + most(problem.bias_lines.iter().map(|p| p.price))
+            + most(problem.amplifiers.iter().map(|p| p.price))
+            + 2.0 * divider_line
+            + most(problem.pots.iter().map(|p| p.price))
+            + most(problem.transistors.iter().map(|t| t.part.price))
+            + most(problem.heatsinks.iter().map(|s| s.part.price));
+        let quiescent_a = most(problem.amplifiers.iter().map(|p| p.figures.iq_max_a));
+        Self {
+            cost: CLEARLY * cost,
+            fraction_of_current: CLEARLY,
+            drawn_a: problem.rail.load.max_a + quiescent_a,
+        }
+    }
 }
 
 impl Choice {
@@ -53,24 +80,6 @@ impl Choice {
 /// Places by name in the order of the ranking.
 pub(crate) fn by_name(names: &Names) -> Names {
     Slot::BY_NAME.map(|slot| names[slot as usize])
-}
-
-/// A side as it stands beside a node of amplifiers.
-pub(crate) trait Beside {
-    /// Stress that every choice has at least, whatever it adds itself.
-    fn least_stress(&self) -> f64;
-
-    /// A node beside the amplifiers; None where it holds no choice that may stand beside one of them.
-    fn choice(&self, sides: &Sides<'_, '_>, node: u32) -> Option<Choice>;
-
-    /// A few shares of which every choice of a node adds at least one.
-    fn shares<'s>(&self, sides: &'s Sides<'_, '_>, node: u32) -> &'s [Share];
-
-    /// The node is a choice made.
-    fn is_made(&self, sides: &Sides<'_, '_>, node: u32) -> bool;
-
-    /// What a node falls into.
-    fn parts(&self, sides: &mut Sides<'_, '_>, node: u32) -> Range<u32>;
 }
 
 /// The choices that no other beats, each with the nodes of which it beats all.
