@@ -4,31 +4,45 @@
 //! is only noted, as small data that [`crate::fault`] puts into words afterwards.
 
 use crate::column::{Axes, Cell, Column, Figure, Need, Range};
-use crate::fault::{Fault, What};
+use crate::decimal::{self, DecimalMark};
+use crate::fault::{Damage, Fault, What};
+use crate::header::Header;
 use crate::price::Price;
 use circuit::parts::OverCurrent;
 use compact_str::CompactString;
 use csv::ByteRecord;
 use quantity::notation::{NotationError, Unit, parse_bytes, quick};
 use quantity::points::{Points, PointsError};
+use quantity::spreadsheet;
 
 /// The field that a declared column is found in, where the header has none.
 pub(crate) const ABSENT: u32 = u32::MAX;
 
 /// Between the items of a list.
-const ITEM: u8 = b';';
+pub(crate) const ITEM: u8 = b';';
 /// Between the two sides of a point or a price break.
-const SIDE: u8 = b':';
+pub(crate) const SIDE: u8 = b':';
 
 /// What is noted while a row is read; kept from row to row, so that its room is.
 #[derive(Default)]
 pub(crate) struct Noted {
     /// What is wrong.
     pub(crate) faults: Vec<Fault>,
+    /// What a spreadsheet has probably changed, though it can be read.
+    pub(crate) doubts: Vec<Fault>,
     /// The needed columns that are blank.
     pub(crate) lacks: Vec<&'static str>,
     points: Vec<(f64, f64)>,
     breaks: Vec<(u64, f64)>,
+}
+
+impl Noted {
+    /// Forgets the row.
+    pub(crate) fn clear(&mut self) {
+        self.faults.clear();
+        self.doubts.clear();
+        self.lacks.clear();
+    }
 }
 
 /// The cells of one row.
@@ -37,6 +51,8 @@ pub(crate) struct Cells<'r, 'n> {
     columns: &'static [Column],
     /// For each of them the field it is found in.
     fields: &'r [u32],
+    /// Figures have a decimal comma.
+    has_commas: bool,
     record: &'r ByteRecord,
     noted: &'n mut Noted,
 }
@@ -44,11 +60,12 @@ pub(crate) struct Cells<'r, 'n> {
 impl<'r, 'n> Cells<'r, 'n> {
     pub(crate) fn new(
         columns: &'static [Column],
-        fields: &'r [u32],
+        header: &'r Header,
         record: &'r ByteRecord,
         noted: &'n mut Noted,
     ) -> Self {
-        Self { columns, fields, record, noted }
+        let has_commas = header.decimal == DecimalMark::Comma;
+        Self { columns, fields: &header.fields, has_commas, record, noted }
     }
 
     /// The trimmed bytes of a cell; empty where it is blank or the file has no such column.
@@ -81,11 +98,24 @@ impl<'r, 'n> Cells<'r, 'n> {
         self.noted.faults.push(Fault { column: Some(at), within: None, what });
     }
 
+    #[cold]
+    fn doubt(&mut self, at: usize, what: What) {
+        self.noted.doubts.push(Fault { column: Some(at), within: None, what });
+    }
+
     /// A text; empty where the cell is blank.
     #[inline]
     pub(crate) fn text(&mut self, at: usize) -> &'r str {
-        match std::str::from_utf8(self.raw(at)) {
-            Ok(text) => text,
+        let cell = self.raw(at);
+        match std::str::from_utf8(cell) {
+            Ok(text) => {
+                if may_be_damaged(cell)
+                    && let Some(damage) = Damage::of(text)
+                {
+                    self.doubt(at, What::DamagedName(damage));
+                }
+                text
+            }
             Err(_) => {
                 self.fault_cell(at, What::NotUtf8);
                 ""
@@ -169,8 +199,26 @@ impl<'r, 'n> Cells<'r, 'n> {
         within: (usize, usize),
         figure: &Figure,
     ) -> Option<f64> {
-        match parse_bytes(text, figure.unit) {
-            Ok(value) if figure.range.holds(value) => Some(value),
+        if spreadsheet::is_day_and_month(text) {
+            self.fault_notation(at, within, NotationError::DateLike, figure.unit);
+            return None;
+        }
+        let read = if self.has_commas && text.contains(&b',') {
+            if decimal::may_part_thousands(text) {
+                self.fault(at, within, What::MayBeThousands);
+                return None;
+            }
+            parse_bytes(&decimal::with_point(text), figure.unit)
+        } else {
+            parse_bytes(text, figure.unit)
+        };
+        match read {
+            Ok(value) if figure.range.holds(value) => {
+                if spreadsheet::is_power(text) {
+                    self.doubt(at, What::WrittenAsPower { value });
+                }
+                Some(value)
+            }
             Ok(value) => {
                 self.fault(at, within, What::OutOfRange { value });
                 None
@@ -269,6 +317,10 @@ impl<'r, 'n> Cells<'r, 'n> {
     }
 
     fn points_in(&mut self, at: usize, cell: &[u8], axes: &Axes) -> Option<Points> {
+        if is_time_of_day(cell) {
+            self.fault_cell(at, What::TimeOfDay);
+            return None;
+        }
         let side = |unit| Figure { unit, range: Range::ABOVE_ZERO, divisor: 1.0 };
         let (x_side, y_side) = (side(axes.x), side(axes.y));
         let mut pairs = std::mem::take(&mut self.noted.points);
@@ -339,15 +391,28 @@ impl<'r, 'n> Cells<'r, 'n> {
 
     /// A needed list of texts.
     pub(crate) fn texts(&mut self, at: usize) -> Vec<CompactString> {
-        let text = self.text(at);
-        if self.raw(at).is_empty() {
+        let cell = self.raw(at);
+        if cell.is_empty() {
             self.lack(at);
             return Vec::new();
         }
+        let Ok(text) = std::str::from_utf8(cell) else {
+            self.fault_cell(at, What::NotUtf8);
+            return Vec::new();
+        };
         let mut texts = Vec::new();
         for (start, item) in items(text.as_bytes()) {
             match text.get(start..start + item.len()).map(str::trim) {
-                Some(item) if !item.is_empty() => texts.push(CompactString::new(item)),
+                Some(item) if !item.is_empty() => {
+                    if may_be_damaged(item.as_bytes())
+                        && let Some(damage) = Damage::of(item)
+                    {
+                        let within = Some((start, start + item.len()));
+                        let what = What::DamagedName(damage);
+                        self.noted.doubts.push(Fault { column: Some(at), within, what });
+                    }
+                    texts.push(CompactString::new(item));
+                }
                 _ => self.fault(at, (start, start + item.len()), What::BlankItem),
             }
         }
@@ -364,6 +429,10 @@ impl<'r, 'n> Cells<'r, 'n> {
         const PRICE: Figure = Figure { unit: Unit::Plain, range: Range::FROM_ZERO, divisor: 1.0 };
         if !cell.contains(&SIDE) {
             return self.in_range(at, cell, (0, cell.len()), &PRICE).map(Price::single);
+        }
+        if is_time_of_day(cell) {
+            self.fault_cell(at, What::TimeOfDay);
+            return None;
         }
         let mut breaks = std::mem::take(&mut self.noted.breaks);
         breaks.clear();
@@ -397,6 +466,27 @@ impl<'r, 'n> Cells<'r, 'n> {
         self.noted.breaks = breaks;
         price
     }
+}
+
+/// A name has the shape of what spreadsheets make of names: a date, a power of ten, a failure. Asked of
+/// every name, so without looking at all of it.
+#[inline]
+fn may_be_damaged(name: &[u8]) -> bool {
+    let parts_a_date = |byte: u8| matches!(byte, b'-' | b'/' | b'.' | b' ');
+    match name {
+        [b'#', ..] => true,
+        [b'0'..=b'9', .., b'E', b'+' | b'-', _, _] => true,
+        [b'0'..=b'9', a, b, _, d, ..] => [*a, *b, *d].into_iter().any(parts_a_date),
+        [a, b, c, d, ..] => parts_a_date(*d) && spreadsheet::is_month([*a, *b, *c]),
+        _ => false,
+    }
+}
+
+/// A whole cell is a time of day. Longer lists are none.
+#[inline]
+fn is_time_of_day(cell: &[u8]) -> bool {
+    const LONGEST: usize = "00:00:00 AM".len();
+    cell.len() <= LONGEST && std::str::from_utf8(cell).is_ok_and(spreadsheet::is_time_of_day)
 }
 
 /// A whole quantity of at least 1.

@@ -46,6 +46,21 @@ pub enum Cell {
     Texts,
 }
 
+impl Cell {
+    /// The cell holds a figure, or a list of them.
+    pub const fn holds_figures(&self) -> bool {
+        match self {
+            Cell::Text | Cell::Word(_) | Cell::Texts => false,
+            Cell::Number(_)
+            | Cell::Count(..)
+            | Cell::Points(_)
+            | Cell::NumberOrPoints(_)
+            | Cell::Price
+            | Cell::Numbers(_) => true,
+        }
+    }
+}
+
 /// A figure in a cell.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Figure {

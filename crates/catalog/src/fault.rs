@@ -1,10 +1,12 @@
 //! What can be wrong with a row, and how it is told.
 
 use crate::column::{Cell, Column};
-use crate::locate::{self, Spot};
+use crate::decimal::DecimalMark;
+use crate::locate::Spot;
 use crate::near;
 use notice::{Notice, Place};
 use quantity::notation::{self, NotationError, Unit};
+use quantity::spreadsheet;
 
 /// One thing that is wrong with a row.
 #[derive(Debug)]
@@ -24,14 +26,22 @@ pub(crate) enum What {
     Ragged { cells: usize, header: usize },
     /// The row names no part.
     NoPart,
-    /// The same part of the same maker stands on an earlier line.
-    Duplicate { line: u32 },
+    /// The same part of the same maker stands on an earlier line, of another file where one is named.
+    Duplicate { file: Option<String>, line: u32 },
     /// The cell is not valid UTF-8.
     NotUtf8,
     /// The same, in a column that is not declared.
     NotUtf8InField { field: usize },
     /// The cell is no figure in its unit.
     Notation { error: NotationError, unit: Unit },
+    /// A comma that may part thousands or decimals.
+    MayBeThousands,
+    /// A spreadsheet made a time of day of a point or price break.
+    TimeOfDay,
+    /// A doubt: a spreadsheet wrote the figure as a power of ten.
+    WrittenAsPower { value: f64 },
+    /// A doubt: a spreadsheet made a date, a power of ten or a failure of a name.
+    DamagedName(Damage),
     /// The figure lies outside its range.
     OutOfRange { value: f64 },
     /// The cell is not one of the small whole numbers it may be.
@@ -58,43 +68,45 @@ pub(crate) enum What {
     ZeroPowerBelowFull { full_power_to_c: f64, zero_power_at_c: f64 },
 }
 
-/// A row of a file, for notices about it.
-pub(crate) struct RowPlace<'f> {
-    /// The file's name.
-    pub(crate) file: &'f str,
-    /// The whole file.
-    pub(crate) bytes: &'f [u8],
-    /// Where the record begins.
-    pub(crate) start: usize,
-    /// Its line.
-    pub(crate) line: u32,
-    /// Between cells.
-    pub(crate) separator: u8,
-    /// The declared columns.
-    pub(crate) columns: &'static [Column],
-    /// For each of them the field it is found in.
-    pub(crate) fields: &'f [u32],
+/// What a spreadsheet made of a name.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub(crate) enum Damage {
+    Date,
+    Power,
+    Failure,
 }
 
-impl RowPlace<'_> {
-    /// The notice of one fault.
-    pub(crate) fn notice(&self, fault: &Fault) -> Notice {
-        let column = fault.column.and_then(|at| self.columns.get(at));
-        let field = match fault.what {
-            What::NotUtf8InField { field } => Some(field),
-            _ => fault.column.and_then(|at| self.fields.get(at)).map(|f| *f as usize),
-        };
-        let spot = locate::spot(self.bytes, self.start, self.separator, field, fault.within);
-        let place = Place { file: self.file.to_owned(), line: self.line, column: spot.column };
-        let (code, message) = told(&fault.what, column);
+impl Damage {
+    /// What the name looks as if a spreadsheet had done to it.
+    pub(crate) fn of(name: &str) -> Option<Self> {
+        if spreadsheet::is_date_of_a_name(name) {
+            Some(Self::Date)
+        } else if spreadsheet::is_power(name.as_bytes()) {
+            Some(Self::Power)
+        } else {
+            spreadsheet::is_failure(name).then_some(Self::Failure)
+        }
+    }
+}
+
+impl Fault {
+    /// The notice of the fault, which lies at this spot.
+    pub(crate) fn told(
+        &self,
+        column: Option<&Column>,
+        place: Place,
+        spot: Spot,
+        decimal: &DecimalMark,
+    ) -> Notice {
+        let (code, message) = told(&self.what, column, decimal);
         let mut notice = Notice::error(code, place, message);
         if spot.is_cell {
             notice = notice.found(spot.found.clone());
         }
-        if let Some(expected) = expected(&fault.what, column) {
+        if let Some(expected) = expected(&self.what, column) {
             notice = notice.expected(expected);
         }
-        if let Some(mend) = mend(&fault.what, column, &spot) {
+        if let Some(mend) = mend(&self.what, column, &spot, decimal) {
             notice = notice.mend(mend);
         }
         notice.excerpt(spot.excerpt)
@@ -102,22 +114,59 @@ impl RowPlace<'_> {
 }
 
 /// Code and message of a fault.
-fn told(what: &What, column: Option<&Column>) -> (&'static str, String) {
+fn told(what: &What, column: Option<&Column>, decimal: &DecimalMark) -> (&'static str, String) {
     let name = column.map_or("", |c| c.name);
     match what {
         What::Ragged { cells, header } => {
             ("row-ragged", format!("the row has {cells} cells where the header has {header}"))
         }
         What::NoPart => ("row-without-part", "the row names no part".to_owned()),
-        What::Duplicate { line } => (
-            "row-duplicate",
-            format!("the same part of the same maker stands on line {line} already"),
-        ),
+        What::Duplicate { file, line } => {
+            let of_file = file.as_ref().map(|name| format!(" of {name}")).unwrap_or_default();
+            let message =
+                format!("the same part of the same maker stands on line {line}{of_file} already");
+            ("row-duplicate", message)
+        }
         What::NotUtf8 | What::NotUtf8InField { .. } => {
             ("cell-not-utf8", "the cell is not valid UTF-8".to_owned())
         }
         What::Notation { error: error @ NotationError::OtherUnit { .. }, .. } => {
             ("cell-unit", format!("`{name}`: {error}"))
+        }
+        What::Notation { error: error @ NotationError::DecimalComma, .. } => {
+            let seen = match decimal {
+                DecimalMark::PointSeen { line, figure } => {
+                    format!(" in a file that has decimal points too: `{figure}` on line {line}")
+                }
+                DecimalMark::Point | DecimalMark::Comma => String::new(),
+            };
+            ("cell-notation", format!("`{name}`: {error}{seen}"))
+        }
+        What::MayBeThousands => (
+            "cell-thousands",
+            format!("`{name}`: three digits behind a comma may be decimals or thousands"),
+        ),
+        What::TimeOfDay => (
+            "cell-points",
+            format!("`{name}`: this looks like a time of day that a spreadsheet made of it"),
+        ),
+        What::WrittenAsPower { value } => (
+            "cell-spreadsheet",
+            format!(
+                "`{name}`: a spreadsheet has written the figure so, and may have cut its digits; it is read as {value}"
+            ),
+        ),
+        What::DamagedName(damage) => {
+            let (looks, made) = match damage {
+                Damage::Date => ("a date", "of a name"),
+                Damage::Power => ("a power of ten", "of a name"),
+                Damage::Failure => ("what a failed formula leaves behind", "in place of a text"),
+            };
+            let message = match damage {
+                Damage::Failure => format!("`{name}`: this looks like {looks} {made}"),
+                _ => format!("`{name}`: this looks like {looks} that a spreadsheet made {made}"),
+            };
+            ("cell-spreadsheet", message)
         }
         What::Notation { error, .. } => ("cell-notation", format!("`{name}`: {error}")),
         What::OutOfRange { value, .. } => {
@@ -159,10 +208,18 @@ fn expected(what: &What, column: Option<&Column>) -> Option<String> {
     match what {
         What::Ragged { header, .. } => Some(format!("{header} cells")),
         What::NoPart => Some("the name of a part".to_owned()),
-        What::Duplicate { .. } => Some("each part of a maker once in a file".to_owned()),
+        What::Duplicate { .. } => {
+            Some("each part of a maker once in all files of a kind".to_owned())
+        }
         What::NotUtf8 | What::NotUtf8InField { .. } => Some("text in UTF-8".to_owned()),
-        What::LineWithoutValue | What::LineTooWide | What::ZeroPowerBelowFull { .. } => None,
-        What::Notation { .. }
+        What::LineWithoutValue
+        | What::LineTooWide
+        | What::ZeroPowerBelowFull { .. }
+        | What::DamagedName(_)
+        | What::WrittenAsPower { .. } => None,
+        What::MayBeThousands
+        | What::TimeOfDay
+        | What::Notation { .. }
         | What::OutOfRange { .. }
         | What::NotCount
         | What::UnknownWord
@@ -175,7 +232,12 @@ fn expected(what: &What, column: Option<&Column>) -> Option<String> {
     }
 }
 
-fn mend(what: &What, column: Option<&Column>, spot: &Spot) -> Option<String> {
+fn mend(
+    what: &What,
+    column: Option<&Column>,
+    spot: &Spot,
+    decimal: &DecimalMark,
+) -> Option<String> {
     match what {
         What::Ragged { .. } if spot.spans_lines => {
             Some("is a quotation mark left open?".to_owned())
@@ -194,15 +256,37 @@ fn mend(what: &What, column: Option<&Column>, spot: &Spot) -> Option<String> {
         What::Notation { error: NotationError::DateLike, .. } => {
             Some("make the column text in the spreadsheet, and type the figure again".to_owned())
         }
+        What::Notation { .. } if spreadsheet::is_failure(&spot.found) => {
+            Some("look at the cell in the spreadsheet: its formula failed, or its column is too narrow".to_owned())
+        }
+        What::Notation { unit, .. } if *decimal == DecimalMark::Comma => {
+            let meant = notation::suggestion(&spot.found.replace(',', "."), *unit)?;
+            Some(try_this(meant.replace('.', ",")))
+        }
         What::Notation { unit, .. } => notation::suggestion(&spot.found, *unit).map(try_this),
+        What::MayBeThousands => {
+            let whole = spot.found.replace(',', "");
+            Some(format!("write `{whole}`, or another number of decimals, such as {}", more_decimals(&spot.found)))
+        }
+        What::TimeOfDay => Some(
+            "make the column text in the spreadsheet, and type the list again: the figures may have \
+             changed"
+                .to_owned(),
+        ),
+        What::WrittenAsPower { .. } => {
+            Some("write all digits of the figure, or a prefix, such as `10k`".to_owned())
+        }
+        What::DamagedName(Damage::Failure) => {
+            Some("look at the cell in the spreadsheet".to_owned())
+        }
+        What::DamagedName(_) => {
+            Some("make the column text in the spreadsheet, and type the name again".to_owned())
+        }
         What::UnknownWord => {
             let Some(Cell::Word(words)) = column.map(|c| c.cell) else { return None };
             near::nearest(&spot.found, words.iter().copied()).map(|w| try_this(w.to_owned()))
         }
         What::BlankItem => Some("remove the `;` that nothing follows or goes before".to_owned()),
-        What::NotAPoint if spot.found.matches(':').count() == 2 => {
-            Some("is this a time of day that a spreadsheet made of a point?".to_owned())
-        }
         What::NotAPoint => {
             Some("write each point as `x:y`; a figure at one current is one point".to_owned())
         }
@@ -217,21 +301,20 @@ fn mend(what: &What, column: Option<&Column>, spot: &Spot) -> Option<String> {
     }
 }
 
-fn try_this(text: String) -> String {
-    format!("try `{text}`")
+/// A figure with three decimals as one that nobody takes for thousands: without its last noughts, or
+/// with one more.
+fn more_decimals(found: &str) -> String {
+    let end = found.find(',').map_or(found.len(), |comma| (comma + 4).min(found.len()));
+    let (figure, rest) = found.split_at(end);
+    let short = figure.trim_end_matches('0');
+    let changed = match short {
+        short if short.ends_with(',') => format!("{short}0"),
+        short if short.len() < figure.len() => short.to_owned(),
+        _ => format!("{figure}0"),
+    };
+    format!("`{changed}{rest}`")
 }
 
-/// A notice about a cell that can be read: its place, text and line.
-pub(crate) fn about_cell(
-    place: &RowPlace<'_>,
-    column: &str,
-    notice: impl FnOnce(Place) -> Notice,
-) -> Notice {
-    let at = place.columns.iter().position(|c| c.name == column);
-    let field = at.and_then(|at| place.fields.get(at)).map(|f| *f as usize);
-    let spot = locate::spot(place.bytes, place.start, place.separator, field, None);
-    let notice =
-        notice(Place { file: place.file.to_owned(), line: place.line, column: spot.column });
-    let notice = if spot.is_cell { notice.found(spot.found) } else { notice };
-    notice.excerpt(spot.excerpt)
+fn try_this(text: String) -> String {
+    format!("try `{text}`")
 }

@@ -2,6 +2,7 @@
 
 use crate::cells::ABSENT;
 use crate::column::{Column, Need};
+use crate::decimal::DecimalMark;
 use crate::kind::Kind;
 use crate::{locate, near};
 use csv::ByteRecord;
@@ -16,8 +17,12 @@ const MOST_COMPARED: usize = 1000;
 pub(crate) struct Header {
     /// The names, trimmed, renamed ones by their new name.
     pub(crate) names: Vec<String>,
+    /// The names in the file of those that were renamed.
+    pub(crate) renamed: Vec<String>,
     /// Between cells.
     pub(crate) separator: u8,
+    /// Before decimals; found out when the header is known.
+    pub(crate) decimal: DecimalMark,
     /// For each declared column the field it is found in, or [`ABSENT`].
     pub(crate) fields: Vec<u32>,
     /// Where the rows begin.
@@ -26,24 +31,29 @@ pub(crate) struct Header {
     pub(crate) lines: u32,
 }
 
-/// Reads the header of a file. None where no row can be understood with it; notices say why.
+/// Why a file has no header row with which rows could be understood; notices have told it.
+#[derive(Debug)]
+pub(crate) struct NoHeader {
+    /// A name is not UTF-8: another encoding may help.
+    pub(crate) has_foreign_bytes: bool,
+}
+
+/// Reads the header of a file.
 pub(crate) fn read(
     kind: Kind,
+    file: &str,
     bytes: &[u8],
     renamed: &[(String, String)],
     notices: &mut Vec<Notice>,
-) -> Option<Header> {
-    let file = kind.file_name();
-    if bytes.starts_with(b"\xff\xfe") || bytes.starts_with(b"\xfe\xff") {
-        let notice = Notice::error("file-encoding", Place::file(file), "the file is in UTF-16")
-            .expected("UTF-8")
-            .mend("save it as `CSV UTF-8`");
-        notices.push(notice);
-        return None;
+) -> Result<Header, NoHeader> {
+    let mut begin = locate::bom_length(bytes);
+    let mut text = bytes.get(begin..).unwrap_or_default();
+    let mut separator = separator_of(text);
+    if let Some((told, length)) = told_separator(text) {
+        separator = told;
+        begin += length;
+        text = bytes.get(begin..).unwrap_or_default();
     }
-    let begin = locate::bom_length(bytes);
-    let text = bytes.get(begin..).unwrap_or_default();
-    let separator = separator_of(text);
     let mut record = ByteRecord::new();
     let mut reader = csv::ReaderBuilder::new()
         .has_headers(false)
@@ -54,25 +64,41 @@ pub(crate) fn read(
         let notice = Notice::error("file-empty", Place::file(file), "the file holds no header row")
             .expected("the names of the columns in the first line");
         notices.push(notice);
-        return None;
+        return Err(NoHeader { has_foreign_bytes: false });
     }
-    let end = begin + usize::try_from(reader.position().byte()).ok()?;
+    let has_foreign_bytes = record.iter().any(|cell| std::str::from_utf8(cell).is_err());
+    let end = begin + usize::try_from(reader.position().byte()).unwrap_or(text.len());
     let head = bytes.get(..end).unwrap_or_default();
     let start = begin + text.iter().take_while(|b| matches!(b, b'\n' | b'\r')).count();
     let mut header = Header {
         names: Vec::with_capacity(record.len()),
+        renamed: Vec::new(),
         separator,
+        decimal: DecimalMark::default(),
         fields: vec![ABSENT; kind.columns().len()],
         end,
         lines: u32::try_from(memchr::memchr_iter(b'\n', head).count()).unwrap_or(u32::MAX),
     };
     let line =
         1 + u32::try_from(bytes.iter().take(start).filter(|b| **b == b'\n').count()).unwrap_or(0);
-    let place = HeaderPlace { kind, bytes, start, separator, line };
-    header.name_columns(&record, renamed, &place, notices)?;
+    let place = HeaderPlace { kind, file, bytes, start, separator, line };
+    if header.name_columns(&record, renamed, &place, notices).is_none() {
+        return Err(NoHeader { has_foreign_bytes });
+    }
     header.find_columns(kind);
     header.doubt_names(&place, notices);
-    Some(header)
+    Ok(header)
+}
+
+/// The separator that a first line `sep=;` tells, as spreadsheets understand it, and that line's
+/// length.
+fn told_separator(text: &[u8]) -> Option<(u8, usize)> {
+    let rest = text.strip_prefix(b"sep=").or_else(|| text.strip_prefix(b"SEP="))?;
+    match rest {
+        [separator @ (b',' | b';' | b'\t'), b'\r', b'\n', ..] => Some((*separator, 7)),
+        [separator @ (b',' | b';' | b'\t'), b'\n', ..] => Some((*separator, 6)),
+        _ => None,
+    }
 }
 
 /// The separator that the header row holds most of, outside quotation marks; a comma where it holds
@@ -94,6 +120,7 @@ fn separator_of(text: &[u8]) -> u8 {
 /// The header row, for notices about it.
 struct HeaderPlace<'f> {
     kind: Kind,
+    file: &'f str,
     bytes: &'f [u8],
     start: usize,
     separator: u8,
@@ -104,7 +131,7 @@ impl HeaderPlace<'_> {
     /// A notice about the name in a field.
     fn about(&self, field: usize, notice: fn(Place) -> Notice) -> Notice {
         let spot = locate::spot(self.bytes, self.start, self.separator, Some(field), None);
-        let file = self.kind.file_name().to_owned();
+        let file = self.file.to_owned();
         notice(Place { file, line: self.line, column: spot.column })
             .found(spot.found)
             .excerpt(spot.excerpt)
@@ -142,7 +169,11 @@ impl Header {
                 continue;
             };
             let text = text.trim();
-            let name = new_names.get(text).copied().unwrap_or(text).to_owned();
+            let new_name = new_names.get(text).copied();
+            if new_name.is_some() {
+                self.renamed.push(text.to_owned());
+            }
+            let name = new_name.unwrap_or(text).to_owned();
             // Columns without a name, as a comma at the end of a line makes them, are no clash.
             if !name.is_empty() && !seen.insert(name.clone()) {
                 let expected = format!("`{}` once", brief(&name));
@@ -217,7 +248,7 @@ impl Header {
 
     /// The notice that a needed column is missing; without a part's name no row can be read at all.
     fn missing(&self, column: &Column, place: &HeaderPlace<'_>) -> Notice {
-        let at = Place::line(place.kind.file_name(), place.line);
+        let at = Place::line(place.file, place.line);
         let name = column.name;
         let consequence = match column.need {
             Need::Always => "no row can be read without it",

@@ -43,6 +43,18 @@ impl Kind {
         }
     }
 
+    /// The folder, within the folder of catalogs, that may hold several files of this kind.
+    pub const fn folder_name(self) -> &'static str {
+        match self {
+            Kind::Zeners => "zeners",
+            Kind::Opamps => "opamps",
+            Kind::Transistors => "transistors",
+            Kind::Resistors => "resistors",
+            Kind::Pots => "pots",
+            Kind::Heatsinks => "heatsinks",
+        }
+    }
+
     /// The columns of this catalog: those that every catalog has, then its own.
     pub const fn columns(self) -> &'static [Column] {
         match self {

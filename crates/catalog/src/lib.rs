@@ -1,4 +1,4 @@
-//! Catalogs of parts: six kinds of CSV files, one row a part that can be bought.
+//! Catalogs of parts: six kinds of CSV files, one or several of each, one row a part that can be bought.
 //!
 //! What a column means (name, unit, range, whether it is needed, default) is declared once, in
 //! [`column`](mod@column)'s terms, by the module of its catalog. The reader, its messages, the search for
@@ -26,11 +26,13 @@ pub mod shop;
 pub mod status;
 
 mod cells;
+mod decimal;
 mod duplicates;
 mod fault;
 mod header;
 mod locate;
 mod near;
+mod source;
 mod tables;
 
 pub use column::Column;

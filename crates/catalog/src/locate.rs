@@ -67,6 +67,33 @@ pub(crate) fn spot(
     }
 }
 
+/// A character of a text with its line.
+pub(crate) struct CharacterSpot {
+    /// Its line, from 1.
+    pub(crate) line: u32,
+    /// Its place in that line in characters, from 1.
+    pub(crate) column: u32,
+    pub(crate) found: String,
+    pub(crate) excerpt: Excerpt,
+}
+
+/// The character of a text in UTF-8 that begins at a byte.
+pub(crate) fn character(text: &[u8], at: usize) -> CharacterSpot {
+    let line_begins = begin_of_line(text, at);
+    let before = text.get(..at).unwrap_or_default();
+    let in_line = text.get(line_begins..at).unwrap_or_default();
+    let rest = text.get(at..).unwrap_or_default();
+    let more = rest.iter().skip(1).take_while(|b| **b & 0xC0 == 0x80).count();
+    let end = at + (1 + more).min(rest.len());
+    let number = |n: usize| u32::try_from(n).unwrap_or(u32::MAX);
+    CharacterSpot {
+        line: number(memchr::memchr_iter(b'\n', before).count() + 1),
+        column: number(characters(in_line) + 1),
+        found: readable(text.get(at..end).unwrap_or_default(), LONGEST_FOUND),
+        excerpt: excerpt(text, line_begins, at..end),
+    }
+}
+
 /// The raw bytes of a field with its quotation marks, and the end of the record.
 fn cell_range(
     bytes: &[u8],

@@ -4,10 +4,12 @@
 
 use crate::cells::{ABSENT, trimmed};
 use crate::column::{Axes, Cell, Column, Figure, Need};
-use crate::fault::{RowPlace, about_cell};
+use crate::decimal::{self, DecimalMark};
 use crate::kind::Kind;
-use crate::read::{MOST_NOTICES, for_each_record};
-use crate::shop::{Catalog, FileRead, Row, Shop};
+use crate::read::MOST_NOTICES;
+use crate::read::records::for_each_record;
+use crate::shop::{Catalog, Row, Shop};
+use crate::source::{RowPlace, Source};
 use circuit::parts::{Amplifier, OverCurrent, Transistor, Zener};
 use circuit::rail::RATED_AT_C;
 use csv::ByteRecord;
@@ -15,8 +17,9 @@ use notice::{Notice, Place};
 use quantity::notation::{Unit, parse_bytes};
 use std::collections::HashSet;
 
-/// Adds a warning for each value that is hard to believe, and one for each file with the number of
-/// blank cells in columns that stand-ins serve for.
+/// Adds a warning for each value that is hard to believe, one for each file whose cells have white
+/// space at their ends, and one for each kind with the number of blank cells in columns that stand-ins
+/// serve for.
 ///
 /// At most [`MOST_NOTICES`] are added for one file.
 pub fn plausibility(shop: &Shop, notices: &mut Vec<Notice>) {
@@ -58,14 +61,15 @@ fn gaps_of<T>(catalog: &Catalog<T>) -> Vec<Gap> {
     let columns = catalog.kind.columns();
     let mut blank = vec![0; columns.len()];
     let mut rows = 0;
-    for file in &catalog.files {
-        let kept = kept_lines(catalog);
-        for_each_record(&file.bytes, &file.header, |line, _, record| {
+    for (number, file) in (0u16..).zip(&catalog.files) {
+        let kept = kept_lines(catalog, number);
+        let source = file.source(catalog.kind);
+        for_each_record(source.text, source.header, |line, _, record| {
             if !kept.contains(&line) {
                 return;
             }
             rows += 1;
-            for (count, field) in blank.iter_mut().zip(&file.header.fields) {
+            for (count, field) in blank.iter_mut().zip(&source.header.fields) {
                 let is_blank = record.get(*field as usize).is_none_or(|c| trimmed(c).is_empty());
                 *count += usize::from(is_blank);
             }
@@ -81,10 +85,11 @@ fn gaps_of<T>(catalog: &Catalog<T>) -> Vec<Gap> {
         .collect()
 }
 
-/// The lines of rows that were read, proven or not.
-fn kept_lines<T>(catalog: &Catalog<T>) -> HashSet<u32> {
-    let proven = catalog.rows.iter().map(|r| r.line);
-    proven.chain(catalog.unproven.iter().map(|u| u.line)).collect()
+/// The lines of the rows of a file that were read, proven or not.
+fn kept_lines<T>(catalog: &Catalog<T>, file: u16) -> HashSet<u32> {
+    let proven = catalog.rows.iter().filter(|r| r.file == file).map(|r| r.line);
+    let unproven = catalog.unproven.iter().filter(|u| u.file == file).map(|u| u.line);
+    proven.chain(unproven).collect()
 }
 
 /// A doubt about one row: the column that shows it, what is odd, and what to look at.
@@ -101,22 +106,25 @@ fn doubt<T>(
     about_row: impl Fn(&Row<T>, &mut dyn FnMut(&'static str, String, &'static str)),
     notices: &mut Vec<Notice>,
 ) {
-    for file in &catalog.files {
-        let kept = kept_lines(catalog);
+    for (number, file) in (0u16..).zip(&catalog.files) {
+        let source = file.source(catalog.kind);
+        let kept = kept_lines(catalog, number);
         let mut starts = Vec::new();
         let mut found = Vec::new();
-        for_each_record(&file.bytes, &file.header, |line, start, record| {
+        let mut spaced = Spaced::default();
+        for_each_record(source.text, source.header, |line, start, record| {
             if kept.contains(&line) {
                 starts.push((line, start));
-                implausible_cells(catalog.kind, file, line, record, &mut found);
+                implausible_cells(&source, line, record, &mut found);
+                spaced.look_at(line, record);
             }
         });
-        for row in &catalog.rows {
+        for row in catalog.rows.iter().filter(|row| row.file == number) {
             about_row(row, &mut |column, message, mend| {
                 found.push(Doubt { line: row.line, column, message, mend });
             });
         }
-        for row in &catalog.left_out {
+        for row in catalog.left_out.iter().filter(|row| row.file == number) {
             if !row.polarity.eq_ignore_ascii_case("pnp") {
                 let message = format!(
                     "the row is left out: its polarity `{}` is neither npn nor pnp",
@@ -139,41 +147,63 @@ fn doubt<T>(
                 .ok()
                 .and_then(|n| starts.get(n))
                 .map(|(_, start)| *start);
-            notices.push(warning(catalog.kind, file, doubt, start));
+            notices.push(warning(source, doubt, start));
         }
-        let place = Place::file(file.name.clone());
         if more > 0 {
             let message = format!("and {more} more doubtful values in this file");
-            notices.push(Notice::warning("notices-cut", place.clone(), message));
+            notices.push(Notice::warning("notices-cut", Place::file(source.name), message));
         }
-        let gaps: Vec<String> = gaps_of(catalog)
-            .iter()
-            .map(|g| format!("`{}` in {} of {} rows", g.column, g.blank, g.rows))
-            .collect();
-        if !gaps.is_empty() {
-            let message = format!("blank optional figures: {}", gaps.join(", "));
-            notices.push(Notice::warning("column-gaps", place, message));
-        }
+        notices.extend(spaced.notice(source.name));
+    }
+    let gaps: Vec<String> = gaps_of(catalog)
+        .iter()
+        .map(|g| format!("`{}` in {} of {} rows", g.column, g.blank, g.rows))
+        .collect();
+    if !gaps.is_empty() {
+        let message = format!("blank optional figures: {}", gaps.join(", "));
+        let place = Place::file(catalog.kind.file_name());
+        notices.push(Notice::warning("column-gaps", place, message));
     }
 }
 
-fn warning(kind: Kind, file: &FileRead, doubt: &Doubt, start: Option<usize>) -> Notice {
+/// Cells with white space at an end, which is passed over: of no harm here, but a sign of what a
+/// spreadsheet or another program makes of names.
+#[derive(Default)]
+struct Spaced {
+    cells: usize,
+    first_line: u32,
+}
+
+impl Spaced {
+    fn look_at(&mut self, line: u32, record: &ByteRecord) {
+        let cells = record.iter().filter(|cell| trimmed(cell).len() != cell.len()).count();
+        if self.cells == 0 {
+            self.first_line = line;
+        }
+        self.cells += cells;
+    }
+
+    fn notice(&self, file: &str) -> Option<Notice> {
+        let cells = match self.cells {
+            0 => return None,
+            1 => "1 cell has".to_owned(),
+            n => format!("{n} cells have"),
+        };
+        let message =
+            format!("{cells} white space at an end, from this line on; it is passed over");
+        Some(Notice::warning("cell-spaces", Place::line(file, self.first_line), message))
+    }
+}
+
+fn warning(source: Source<'_>, doubt: &Doubt, start: Option<usize>) -> Notice {
     let code = "value-implausible";
     let notice = match start {
         Some(start) => {
-            let place = RowPlace {
-                file: &file.name,
-                bytes: &file.bytes,
-                start,
-                line: doubt.line,
-                separator: file.header.separator,
-                columns: kind.columns(),
-                fields: &file.header.fields,
-            };
-            about_cell(&place, doubt.column, |p| Notice::warning(code, p, doubt.message.clone()))
+            let place = RowPlace { source, start, line: doubt.line };
+            place.about_cell(doubt.column, |p| Notice::warning(code, p, doubt.message.clone()))
         }
         None => {
-            let place = Place::line(file.name.clone(), doubt.line);
+            let place = Place::line(source.name, doubt.line);
             Notice::warning(code, place, doubt.message.clone())
         }
     };
@@ -181,17 +211,13 @@ fn warning(kind: Kind, file: &FileRead, doubt: &Doubt, start: Option<usize>) -> 
 }
 
 /// Cells outside the plausible range of their column.
-fn implausible_cells(
-    kind: Kind,
-    file: &FileRead,
-    line: u32,
-    record: &ByteRecord,
-    found: &mut Vec<Doubt>,
-) {
-    for (column, field) in kind.columns().iter().zip(&file.header.fields) {
+fn implausible_cells(source: &Source<'_>, line: u32, record: &ByteRecord, found: &mut Vec<Doubt>) {
+    let has_commas = source.header.decimal == DecimalMark::Comma;
+    for (column, field) in source.kind.columns().iter().zip(&source.header.fields) {
         let Some((low, high)) = column.plausible.filter(|_| *field != ABSENT) else { continue };
         let cell = record.get(*field as usize).map(trimmed).unwrap_or_default();
-        for (figure, unit) in figures_in(cell, &column.cell) {
+        let with_point = has_commas.then(|| decimal::with_point(cell));
+        for (figure, unit) in figures_in(with_point.as_deref().unwrap_or(cell), &column.cell) {
             if (low..=high).contains(&figure) {
                 continue;
             }

@@ -1,9 +1,11 @@
 //! What has been read from a folder of catalogs.
 
+use crate::decimal::DecimalMark;
 use crate::header::Header;
 use crate::kind::Kind;
 use crate::locate;
 use crate::price::Price;
+use crate::source::Source;
 use crate::status::Status;
 use circuit::parts::{Amplifier, Heatsink, Pot, ResistorLine, Transistor, Zener};
 use compact_str::CompactString;
@@ -26,7 +28,7 @@ pub struct Shop {
 }
 
 impl Shop {
-    /// The files that were read, in the order of [`Kind::ALL`].
+    /// The files that were read, in the order of [`Kind::ALL`], those of a kind by name.
     pub fn files(&self) -> impl Iterator<Item = &FileRead> {
         let Shop { zeners, opamps, transistors, resistors, pots, heatsinks } = self;
         [
@@ -39,6 +41,18 @@ impl Shop {
         ]
         .into_iter()
         .flatten()
+    }
+
+    /// A file of a kind, by its place among those of the kind.
+    pub fn file(&self, kind: Kind, file: u16) -> Option<&FileRead> {
+        match kind {
+            Kind::Zeners => self.zeners.file(file),
+            Kind::Opamps => self.opamps.file(file),
+            Kind::Transistors => self.transistors.file(file),
+            Kind::Resistors => self.resistors.file(file),
+            Kind::Pots => self.pots.file(file),
+            Kind::Heatsinks => self.heatsinks.file(file),
+        }
     }
 
     /// The unproven parts of all catalogs, each with the kind of its catalog.
@@ -62,15 +76,15 @@ impl Shop {
 pub struct Catalog<T> {
     /// Which kind.
     pub kind: Kind,
-    /// The files that were read: none where an optional one is missing.
+    /// The files that were read, in the order of their names: none where an optional one is missing.
     pub files: Vec<FileRead>,
-    /// The parts that can be chosen, in the order of the file.
+    /// The parts that can be chosen, in the order of files and lines.
     pub rows: Vec<Row<T>>,
-    /// Parts that blank cells leave unproven, in the order of the file.
+    /// Parts that blank cells leave unproven, in the same order.
     pub unproven: Vec<Unproven>,
     /// Rows that are none of this tool's business: transistors that are not npn.
     pub left_out: Vec<LeftOut>,
-    /// How many rows were dropped because something in them is wrong.
+    /// How many rows of all files were dropped because something in them is wrong.
     pub broken: usize,
 }
 
@@ -93,16 +107,18 @@ impl<T> Catalog<T> {
     }
 
     /// The text of a cell of the record that starts at `line`, by column name, trimmed; also of
-    /// columns that only the file knows. None where there is no such record or column. Reads the
-    /// file again: for messages, not for loops over rows.
+    /// columns that only the file knows. Figures have a decimal point, whatever mark the file uses. None
+    /// where there is no such record or column. Reads the file again: for messages, not for loops over
+    /// rows.
     pub fn cell(&self, file: u16, line: u32, column: &str) -> Option<String> {
         self.cells(file, line).into_iter().find(|(name, _)| name == column).map(|(_, text)| text)
     }
 
     /// All cells of the record that starts at `line`, with the names of their columns, in the order
-    /// of the file. Empty where there is no such record. Reads the file again.
+    /// of the file; figures as for [`Catalog::cell`]. Empty where there is no such record. Reads the
+    /// file again.
     pub fn cells(&self, file: u16, line: u32) -> Vec<(String, String)> {
-        self.file(file).map(|f| f.cells(line)).unwrap_or_default()
+        self.file(file).map(|f| f.cells(self.kind, line)).unwrap_or_default()
     }
 }
 
@@ -185,10 +201,14 @@ pub struct LeftOut {
 /// A catalog file as it was read.
 #[derive(Debug, Clone)]
 pub struct FileRead {
-    /// The file's name within the folder: `zeners.csv`.
+    /// The file's name within the folder: `zeners.csv`, `zeners/brindlow.csv`.
     pub name: String,
     /// The file, byte for byte.
     pub bytes: Vec<u8>,
+    /// Its text as UTF-8 where the bytes are something else.
+    pub(crate) decoded: Option<Vec<u8>>,
+    /// How many of its rows were dropped because something in them is wrong.
+    pub broken: usize,
     /// The header row with the names on the page in place of renamed ones.
     pub(crate) header: Header,
 }
@@ -199,10 +219,35 @@ impl FileRead {
         &self.header.names
     }
 
-    /// All cells of the record that starts at `line`.
-    fn cells(&self, line: u32) -> Vec<(String, String)> {
-        let texts = locate::record_texts(&self.bytes, line, self.header.separator);
-        self.header.names.iter().cloned().zip(texts).collect()
+    /// The names, as the file writes them, of the columns that were renamed.
+    pub fn renamed(&self) -> &[String] {
+        &self.header.renamed
+    }
+
+    /// The text that rows were read from.
+    fn text(&self) -> &[u8] {
+        self.decoded.as_deref().unwrap_or(&self.bytes)
+    }
+
+    /// The file as its rows are read.
+    pub(crate) fn source(&self, kind: Kind) -> Source<'_> {
+        Source { kind, name: &self.name, text: self.text(), header: &self.header }
+    }
+
+    /// All cells of the record that starts at `line`, figures with a decimal point.
+    fn cells(&self, kind: Kind, line: u32) -> Vec<(String, String)> {
+        let texts = locate::record_texts(self.text(), line, self.header.separator);
+        let holds_figures = |name: &str| kind.column(name).is_some_and(|c| c.cell.holds_figures());
+        let has_commas = self.header.decimal == DecimalMark::Comma;
+        self.header
+            .names
+            .iter()
+            .zip(texts)
+            .map(|(name, text)| match has_commas && holds_figures(name) {
+                true => (name.clone(), text.replace(',', ".")),
+                false => (name.clone(), text),
+            })
+            .collect()
     }
 }
 

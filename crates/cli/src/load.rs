@@ -1,6 +1,7 @@
 //! Sheet, shop file and catalogs, read from their files.
 
 use crate::arguments::Catalogs;
+use catalog::kind::{is_known_column, nearest_column};
 use catalog::{ReadOptions, Shop, read_folder};
 use eligible::{Eligible, eligible};
 use notice::{Notice, Place, has_errors};
@@ -121,13 +122,50 @@ pub(crate) fn read_catalogs(
     needs_pots: bool,
     notices: &mut Vec<Notice>,
 ) -> Option<Shop> {
+    let known = unknown_columns(shop_file, notices);
     let options = ReadOptions {
         renamed: shop_file.columns.clone(),
         skip_broken_rows: catalogs.skip_broken_rows,
         needs_pots,
         needs_heatsinks: false,
     };
-    read_folder(&catalogs.catalogs, &options, notices)
+    let shop = read_folder(&catalogs.catalogs, &options, notices)?;
+    unused_columns(shop_file, &shop, notices);
+    known.then_some(shop)
+}
+
+/// Tells the names in `[columns]` of the shop file that are given as those of columns and are none.
+/// True where there is none such.
+fn unknown_columns(shop_file: &ShopFile, notices: &mut Vec<Notice>) -> bool {
+    let mut sound = true;
+    for ((name, target), mark) in shop_file.columns.iter().zip(&shop_file.column_marks) {
+        if is_known_column(target) {
+            continue;
+        }
+        sound = false;
+        let message =
+            format!("column \"{name}\" is to be read as `{target}`, which no catalog has");
+        let mut notice = Notice::error("unknown-column", mark.place.clone(), message)
+            .found(target)
+            .expected("the name of a column");
+        notice.excerpt = mark.excerpt.clone();
+        notice.mend = nearest_column(target).map(|near| format!("did you mean `{near}`?"));
+        notices.push(notice);
+    }
+    sound
+}
+
+/// Warns of names in `[columns]` that no catalog file has.
+fn unused_columns(shop_file: &ShopFile, shop: &Shop, notices: &mut Vec<Notice>) {
+    for ((name, target), mark) in shop_file.columns.iter().zip(&shop_file.column_marks) {
+        let is_used = shop.files().any(|file| file.renamed().contains(name));
+        if !is_used && is_known_column(target) {
+            let message = format!("no catalog has a column \"{name}\", so this has no effect");
+            let mut notice = Notice::warning("unused-column", mark.place.clone(), message);
+            notice.excerpt = mark.excerpt.clone();
+            notices.push(notice.mend("write the name as it stands in the header row"));
+        }
+    }
 }
 
 fn read_file(path: &Path, notices: &mut Vec<Notice>) -> Option<Vec<u8>> {

@@ -134,3 +134,47 @@ fn a_value_that_can_hardly_be_meant_is_a_doubt() {
         run.err
     );
 }
+
+#[test]
+fn a_column_that_shop_toml_means_must_be_one() {
+    let folder = copy_of("fixed-12v");
+    let shop = folder.path().join("catalogs/shop.toml");
+    let before = std::fs::read_to_string(&shop).unwrap_or_default();
+    std::fs::write(&shop, format!("{before}\n[columns]\n\"price each\" = \"costs\"\n")).unwrap();
+    let wrong = check(folder.path(), &[]);
+    assert_eq!(wrong.status, 2);
+    assert!(wrong.err.contains("error[unknown-column]"), "{}", wrong.err);
+    assert!(wrong.err.contains("\"price each\" is to be read as `costs`"), "{}", wrong.err);
+    assert!(wrong.err.contains("did you mean `cost`?"), "{}", wrong.err);
+
+    alter(folder.path(), "catalogs/shop.toml", "costs", "cost");
+    let unused = check(folder.path(), &[]);
+    assert_eq!(unused.status, 0, "{}", unused.err);
+    assert!(unused.err.contains("warning[unused-column]"), "{}", unused.err);
+
+    alter(folder.path(), "catalogs/zeners.csv", "cost", "price each");
+    let used = check(folder.path(), &[]);
+    assert!(!used.err.contains("unused-column"), "{}", used.err);
+}
+
+#[test]
+fn several_files_of_a_kind_are_told_one_by_one() {
+    let folder = copy_of("fixed-12v");
+    let catalogs = folder.path().join("catalogs");
+    std::fs::create_dir(catalogs.join("zeners")).unwrap();
+    std::fs::rename(catalogs.join("zeners.csv"), catalogs.join("zeners/old.csv")).unwrap();
+    let header = "part,maker,cost,vz_v\nZZ,Brindlow,0.1,5.6\n";
+    std::fs::write(catalogs.join("zeners/new.csv"), header).unwrap();
+    let run = check(folder.path(), &[]);
+    assert_eq!(run.status, 0, "{}", run.err);
+    let row = |file: &str| run.out.lines().find(|l| l.starts_with(file)).unwrap_or_default();
+    let words = |file: &str| row(file).split_whitespace().skip(1).collect::<Vec<_>>().join(" ");
+    assert_eq!(words("zeners/new.csv "), "0 1 0 0 0 8", "{}", run.out);
+    assert_eq!(words("zeners/old.csv "), "3 1 0 0 0 0", "{}", run.out);
+    assert!(run.out.contains("zeners/new.csv:2 Brindlow/ZZ lacks"), "{}", run.out);
+    let list = shortlist(folder.path(), &["--out", "x.json"]);
+    assert_eq!(list.status, 0, "{}", list.err);
+    let json = std::fs::read_to_string(folder.path().join("x.json")).unwrap();
+    assert!(json.contains("\"file\": \"zeners/old.csv\""), "{json}");
+    assert!(json.contains("\"zeners/new.csv\": \""), "the hash of each: {json}");
+}

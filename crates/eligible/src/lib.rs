@@ -242,15 +242,7 @@ fn lacking<'a, T>(
 
 /// The name of a catalog's file.
 pub fn file_name(shop: &Shop, kind: Kind, file: u16) -> &str {
-    let read = match kind {
-        Kind::Zeners => shop.zeners.file(file),
-        Kind::Opamps => shop.opamps.file(file),
-        Kind::Transistors => shop.transistors.file(file),
-        Kind::Resistors => shop.resistors.file(file),
-        Kind::Pots => shop.pots.file(file),
-        Kind::Heatsinks => shop.heatsinks.file(file),
-    };
-    read.map_or(kind.file_name(), |f| &f.name)
+    shop.file(kind, file).map_or(kind.file_name(), |f| &f.name)
 }
 
 impl<'a> Eligible<'a> {

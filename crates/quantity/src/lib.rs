@@ -1,5 +1,5 @@
 //! Numbers of the trade: comparison at ten significant digits, preferred values, the notation of
-//! catalog cells, and curves given by points.
+//! catalog cells and what spreadsheets make of it, and curves given by points.
 //!
 //! This crate does not know parts, circuits or files.
 
@@ -7,3 +7,4 @@ pub mod digits;
 pub mod notation;
 pub mod points;
 pub mod preferred;
+pub mod spreadsheet;

@@ -5,6 +5,7 @@
 //! `R47`. Prefix and code letters move the decimal exponent before anything turns binary, so `5m`
 //! is the very figure that `0.005` is.
 
+use crate::spreadsheet::is_date;
 use std::fmt;
 
 /// The unit of a column, with the words that a cell may end in.
@@ -213,11 +214,15 @@ pub fn parse_bytes(cell: &[u8], unit: Unit) -> Result<f64, NotationError> {
 }
 
 /// The figure where the cell is a short number, with at most a prefix behind it, as nearly all cells
-/// are; None where [`parse_bytes`] has to look closer. Allocates nothing and finds no words for what
+/// are; None where [`parse_bytes`] has to look closer, as at the shapes that [`crate::spreadsheet`]
+/// recognises: `1E+04`, `01.05`. Allocates nothing and finds no words for what
 /// is wrong, so that loops over large files may ask it first.
 #[inline]
 pub fn quick(cell: &[u8], unit: Unit) -> Option<f64> {
     let (number, used) = Decimal::scan(cell)?;
+    if number.has_large_e || matches!(cell, [b'0', b'0'..=b'9', ..]) {
+        return None;
+    }
     match cell.get(used..)? {
         [] => number.nearest(0),
         &[letter] if !is_kelvin(letter, unit) => {
@@ -235,6 +240,8 @@ struct Decimal {
     digits: u64,
     /// Digits were lost because there are too many to be held.
     is_long: bool,
+    /// The exponent stands behind a large `E`.
+    has_large_e: bool,
     exponent: i32,
 }
 
@@ -257,7 +264,8 @@ impl Decimal {
     /// The number at the beginning of the text, and how many bytes it takes.
     #[inline]
     fn scan(text: &[u8]) -> Option<(Self, usize)> {
-        let mut n = Self { negative: false, digits: 0, is_long: false, exponent: 0 };
+        let mut n =
+            Self { negative: false, digits: 0, is_long: false, has_large_e: false, exponent: 0 };
         let mut at = 0;
         if let Some(sign @ (b'-' | b'+')) = text.first() {
             n.negative = *sign == b'-';
@@ -276,9 +284,10 @@ impl Decimal {
         if count == 0 {
             return None;
         }
-        if let Some(b'e' | b'E') = text.get(at)
+        if let Some(letter @ (b'e' | b'E')) = text.get(at)
             && let Some((power, end)) = scan_power(text, at + 1)
         {
+            n.has_large_e = *letter == b'E';
             n.exponent += power;
             at = end;
         }
@@ -372,7 +381,7 @@ fn written_out(text: &str, unit: Unit) -> Result<f64, NotationError> {
         return figure;
     }
     let Some((number, used)) = Decimal::scan(text.as_bytes()) else {
-        return Err(if looks_like_a_date(text) {
+        return Err(if is_date(text) {
             NotationError::DateLike
         } else {
             NotationError::NotANumber
@@ -465,7 +474,7 @@ fn trailing(text: &str, rest: &str, expected: Unit) -> NotationError {
     if chars.next() == Some(',') && chars.next().is_some_and(|c| c.is_ascii_digit()) {
         return NotationError::DecimalComma;
     }
-    if looks_like_a_date(text) {
+    if is_date(text) {
         return NotationError::DateLike;
     }
     NotationError::Trailing { text: rest.chars().take(LONGEST_QUOTE).collect() }
@@ -474,28 +483,9 @@ fn trailing(text: &str, rest: &str, expected: Unit) -> NotationError {
 /// Characters of a cell that a message repeats.
 const LONGEST_QUOTE: usize = 24;
 
-/// Spreadsheets make `2024-05-01`, `1/5/2024`, `01.05.2024` or `5-May` of what was typed.
-fn looks_like_a_date(text: &str) -> bool {
-    const MONTHS: [&str; 12] =
-        ["jan", "feb", "mar", "apr", "may", "jun", "jul", "aug", "sep", "oct", "nov", "dec"];
-    const LONGEST: usize = 20;
-    if text.len() > LONGEST || !text.bytes().any(|b| b.is_ascii_digit()) {
-        return false;
-    }
-    let pieces: Vec<&str> = text.split(['-', '/', '.', ' ']).collect();
-    let is_number = |p: &&&str| !p.is_empty() && p.bytes().all(|b| b.is_ascii_digit());
-    let is_month = |p: &&&str| {
-        let p = p.to_ascii_lowercase();
-        MONTHS.iter().any(|m| p.starts_with(m))
-    };
-    let numbers = pieces.iter().filter(is_number).count();
-    let months = pieces.iter().filter(is_month).count();
-    pieces.len() == numbers + months && (numbers == 3 || (months == 1 && numbers >= 1))
-}
-
 /// What the writer of a text that can't be read probably meant: a text that can be.
 ///
-/// Tries decimal commas, separators of thousands, typographic minus signs, signs and words before
+/// Tries decimal commas, separators of thousands (points and spaces too), typographic minus signs, signs and words before
 /// the number, and unit words in another case.
 ///
 /// ```
@@ -513,7 +503,12 @@ pub fn suggestion(text: &str, unit: Unit) -> Option<String> {
     let readable = |t: &String| parse(t, unit).is_ok();
     let minus = text.replace(['\u{2212}', '\u{2013}'], "-");
     let bare = minus.trim_start_matches(|c: char| !c.is_ascii_digit() && !"+-.".contains(c));
-    let thousands = bare.contains('.').then(|| bare.replace(',', ""));
+    let is_point_last = bare.rfind('.') > bare.rfind(',');
+    let thousands = bare.contains('.').then(|| match is_point_last {
+        true => bare.replace(',', ""),
+        false => bare.replace('.', "").replace(',', "."),
+    });
+    let in_groups = between_digits(bare, char::is_whitespace);
     let comma = (bare.matches(',').count() == 1).then(|| bare.replace(',', "."));
     let number = bare.trim_end_matches(|c: char| !c.is_ascii_digit());
     let in_words = unit.spellings().iter().find_map(|word| {
@@ -529,7 +524,7 @@ pub fn suggestion(text: &str, unit: Unit) -> Option<String> {
     });
     let r_code =
         (unit == Unit::Ohm).then(|| bare.strip_suffix('R').map(|n| n.replace('.', "R"))).flatten();
-    [Some(bare.to_owned()), thousands, comma, in_words, point, r_code]
+    [Some(bare.to_owned()), thousands, in_groups, comma, in_words, point, r_code]
         .into_iter()
         .flatten()
         .find(readable)
@@ -539,6 +534,22 @@ pub fn suggestion(text: &str, unit: Unit) -> Option<String> {
             let is_foreign = matches!(written_out(bare, unit), Err(NotationError::Trailing { .. }));
             is_foreign.then(|| number.to_owned()).filter(readable)
         })
+}
+
+/// The text without the characters of a kind that stand between two digits.
+fn between_digits(text: &str, is_of_kind: impl Fn(char) -> bool) -> Option<String> {
+    let chars: Vec<char> = text.chars().collect();
+    let is_digit =
+        |at: Option<usize>| at.and_then(|at| chars.get(at)).is_some_and(char::is_ascii_digit);
+    let kept: String = chars
+        .iter()
+        .enumerate()
+        .filter(|(at, c)| {
+            !(is_of_kind(**c) && is_digit(at.checked_sub(1)) && is_digit(at.checked_add(1)))
+        })
+        .map(|(_, c)| *c)
+        .collect();
+    (kept != text).then_some(kept)
 }
 
 /// Prefixes for display, with their decimal exponents, rising.
@@ -727,6 +738,9 @@ mod tests {
         let cases = [
             ("5,1", Unit::Volt, Some("5.1")),
             ("1,234.5", Unit::Ohm, Some("1234.5")),
+            ("1.234,5", Unit::Ohm, Some("1234.5")),
+            ("1 234.5", Unit::Ohm, Some("1234.5")),
+            ("10\u{202f}000 Ω", Unit::Ohm, Some("10000 Ω")),
             ("\u{2212}2.5", Unit::MillivoltPerDegree, Some("-2.5")),
             ("±5", Unit::Percent, Some("5")),
             ("€0.42", Unit::Plain, Some("0.42")),

@@ -2,11 +2,12 @@
 
 use crate::look::{Look, grouped};
 use catalog::plausible::{Gap, gaps};
-use catalog::{Catalog, Kind, Shop};
+use catalog::{Catalog, FileRead, Kind, Shop};
 use comfy_table::{Attribute, Cell, CellAlignment, Table, TableComponent};
+use eligible::file_name;
 use notice::{Notice, Severity};
 
-/// One line of the summary: a catalog.
+/// One line of the summary: a catalog file.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Line {
     /// Its file.
@@ -30,7 +31,7 @@ pub struct Line {
 /// What a folder of catalogs holds and lacks.
 #[derive(Debug, Clone)]
 pub struct CatalogCheck<'a> {
-    /// A line for each catalog, in the order of kinds.
+    /// A line for each file, in the order of kinds and names; one for a kind without a file.
     pub lines: Vec<Line>,
     /// Blank cells of optional columns.
     pub gaps: Vec<Gap>,
@@ -40,14 +41,15 @@ pub struct CatalogCheck<'a> {
 impl<'a> CatalogCheck<'a> {
     /// Sums up what was read, and the notices about it.
     pub fn new(shop: &'a Shop, notices: &[Notice]) -> Self {
-        let lines = vec![
-            line(&shop.zeners, notices),
-            line(&shop.opamps, notices),
-            line(&shop.transistors, notices),
-            line(&shop.resistors, notices),
-            line(&shop.pots, notices),
-            line(&shop.heatsinks, notices),
-        ];
+        let lines = [
+            lines(&shop.zeners, notices),
+            lines(&shop.opamps, notices),
+            lines(&shop.transistors, notices),
+            lines(&shop.resistors, notices),
+            lines(&shop.pots, notices),
+            lines(&shop.heatsinks, notices),
+        ]
+        .concat();
         Self { lines, gaps: gaps(shop), shop }
     }
 
@@ -74,7 +76,7 @@ impl<'a> CatalogCheck<'a> {
                     if part.maker.is_empty() { String::new() } else { format!("{}/", part.maker) };
                 let line = format!(
                     "{}:{} {maker}{} lacks {}",
-                    kind.file_name(),
+                    file_name(self.shop, kind, part.file),
                     part.line,
                     part.part,
                     part.lacks.join(", ")
@@ -134,19 +136,32 @@ impl<'a> CatalogCheck<'a> {
     }
 }
 
-fn line<T>(catalog: &Catalog<T>, notices: &[Notice]) -> Line {
-    let file = catalog.kind.file_name();
-    let about = |severity| {
-        notices.iter().filter(|n| n.severity == severity && n.place.file == file).count()
+fn lines<T>(catalog: &Catalog<T>, notices: &[Notice]) -> Vec<Line> {
+    let line = |file: &str| {
+        let about = |severity| {
+            notices.iter().filter(|n| n.severity == severity && n.place.file == file).count()
+        };
+        Line {
+            file: file.to_owned(),
+            is_there: false,
+            rows: 0,
+            unproven: 0,
+            left_out: 0,
+            broken: 0,
+            errors: about(Severity::Error),
+            warnings: about(Severity::Warning),
+        }
     };
-    Line {
-        file: file.to_owned(),
-        is_there: !catalog.files.is_empty(),
-        rows: catalog.rows.len(),
-        unproven: catalog.unproven.len(),
-        left_out: catalog.left_out.len(),
-        broken: catalog.broken,
-        errors: about(Severity::Error),
-        warnings: about(Severity::Warning),
+    if catalog.files.is_empty() {
+        return vec![line(catalog.kind.file_name())];
     }
+    let of_file = |(number, file): (u16, &FileRead)| Line {
+        is_there: true,
+        rows: catalog.rows.iter().filter(|r| r.file == number).count(),
+        unproven: catalog.unproven.iter().filter(|u| u.file == number).count(),
+        left_out: catalog.left_out.iter().filter(|l| l.file == number).count(),
+        broken: file.broken,
+        ..line(&file.name)
+    };
+    (0u16..).zip(&catalog.files).map(of_file).collect()
 }

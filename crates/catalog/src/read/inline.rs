@@ -1,6 +1,7 @@
 //! A part that stands in no catalog, given cell by cell: read as the one row of a catalog of its own.
 
-use super::{ReadOptions, read_bytes};
+use super::ReadOptions;
+use super::one_kind::read_bytes;
 use crate::kind::Kind;
 use crate::shop::{Catalog, Shop};
 use notice::{Notice, Severity};
@@ -38,12 +39,12 @@ pub fn read_inline(kind: Kind, cells: &[(&str, &str)], faults: &mut Vec<InlineFa
         heatsinks: Catalog::empty(Kind::Heatsinks),
     };
     match kind {
-        Kind::Zeners => read_bytes(bytes, &options, &mut shop.zeners, &mut notices),
-        Kind::Opamps => read_bytes(bytes, &options, &mut shop.opamps, &mut notices),
-        Kind::Transistors => read_bytes(bytes, &options, &mut shop.transistors, &mut notices),
-        Kind::Resistors => read_bytes(bytes, &options, &mut shop.resistors, &mut notices),
-        Kind::Pots => read_bytes(bytes, &options, &mut shop.pots, &mut notices),
-        Kind::Heatsinks => read_bytes(bytes, &options, &mut shop.heatsinks, &mut notices),
+        Kind::Zeners => shop.zeners = read_bytes(bytes, &options, &mut notices),
+        Kind::Opamps => shop.opamps = read_bytes(bytes, &options, &mut notices),
+        Kind::Transistors => shop.transistors = read_bytes(bytes, &options, &mut notices),
+        Kind::Resistors => shop.resistors = read_bytes(bytes, &options, &mut notices),
+        Kind::Pots => shop.pots = read_bytes(bytes, &options, &mut notices),
+        Kind::Heatsinks => shop.heatsinks = read_bytes(bytes, &options, &mut notices),
     }
     // Doubts about the header speak of columns that were not given; the row says what it lacks.
     let errors = notices.into_iter().filter(|n| n.severity == Severity::Error);

@@ -17,7 +17,7 @@ pub(crate) const SHARED: [Column; COUNT] = OWN;
 
 columns! {
     first 0, after NOTHING;
-    part: needed(Cell::Text, "the part's name as it is ordered; with `maker` once in a file")
+    part: needed(Cell::Text, "the part's name as it is ordered; with `maker` once in all files of a kind")
         .need(Need::Always);
     maker: optional(Cell::Text, "no maker", "who makes it");
     cost: needed(Cell::Price, "what one piece costs, or price breaks `1:0.42;100:0.31`: from that quantity on; below the first break its price")
