@@ -13,6 +13,7 @@
 //! | [`read`] | reading a folder of catalogs |
 //! | [`plausible`] | values that can be read but hardly be meant |
 //! | [`reference`](mod@reference) | the reference page of all columns |
+//! | [`start`] | catalogs to begin with |
 //!
 //! This crate does not compute a check, choose a value, or print. Faults become [`notice::Notice`]s.
 
@@ -23,6 +24,7 @@ pub mod price;
 pub mod read;
 pub mod reference;
 pub mod shop;
+pub mod start;
 pub mod status;
 
 mod cells;

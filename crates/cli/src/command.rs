@@ -2,6 +2,9 @@
 
 mod catalog_check;
 mod catalog_gaps;
+mod completions;
+mod man;
+mod new;
 mod order;
 mod plot;
 mod shortlist;
@@ -31,6 +34,9 @@ enum Command {
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
+    New(new::Arguments),
+    Completions(completions::Arguments),
+    Man(man::Arguments),
 }
 
 #[derive(Debug, Subcommand)]
@@ -90,6 +96,9 @@ impl Cli {
             Command::Plot(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
+            Command::New(arguments) => arguments.showing,
+            Command::Completions(arguments) => arguments.showing,
+            Command::Man(arguments) => arguments.showing,
         }
     }
 }
@@ -106,5 +115,8 @@ pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
             catalog_check::run(&arguments, screen)
         }
         Command::Catalog(CatalogCommand::Gaps(arguments)) => catalog_gaps::run(&arguments, screen),
+        Command::New(arguments) => new::run(&arguments, screen),
+        Command::Completions(arguments) => completions::run(&arguments, screen),
+        Command::Man(arguments) => man::run(&arguments, screen),
     }
 }

@@ -58,6 +58,8 @@ impl Target {
 pub(crate) enum FileFault {
     /// It is there already.
     Exists(PathBuf),
+    /// It is there already, and nothing makes this command replace it.
+    Kept(PathBuf),
     /// Its folder is not there.
     NoFolder(PathBuf),
     /// Two outputs have the same name.
@@ -74,6 +76,9 @@ impl fmt::Display for FileFault {
                 "{} is there already; --overwrite replaces it, or choose another name",
                 path.display()
             ),
+            Self::Kept(path) => {
+                write!(f, "{} is there already, and stays; choose another name", path.display())
+            }
             Self::NoFolder(path) => {
                 let folder = folder_of(path).display();
                 write!(

@@ -359,22 +359,3 @@ fn no_escape_sequences_leave_the_program_but_on_a_terminal() {
         assert!(run.out.contains("5V6") && !run.out.contains('\u{1b}'), "{}", run.out);
     }
 }
-
-// ---- help ----
-
-/// Every example of the long help of a command runs on the sample catalogs.
-#[test]
-fn examples_of_the_help_run() {
-    let sample = repository("");
-    for command in [&["shortlist"][..], &["order"], &["catalog", "check"]] {
-        let help = run(&sample, &[command, &["--help"]].concat()).out.replace("\\\n", " ");
-        let examples: Vec<&str> =
-            help.lines().filter_map(|line| line.trim().strip_prefix("railwright ")).collect();
-        assert!(examples.len() >= 2, "{command:?} has two examples: {help}");
-        for example in examples {
-            let arguments: Vec<&str> = example.split_whitespace().collect();
-            let run = run(&sample, &arguments);
-            assert_eq!(run.status, 0, "{example}: {}", run.err);
-        }
-    }
-}

@@ -19,6 +19,7 @@
 //! | [`shop`] | the shop file |
 //! | [`requirement`] | the sheet as a whole: forms, defaults, rules between keys |
 //! | [`mod@reference`] | the reference of all keys, made from their declarations |
+//! | [`start`] | a sheet to begin with, likewise |
 //!
 //! This crate does not open files, print, know catalogs or compute a check.
 
@@ -33,9 +34,11 @@ pub mod requirement;
 mod settings;
 pub mod shop;
 mod source;
+pub mod start;
 mod value;
 
 pub use reference::reference_markdown;
 pub use requirement::{Assumed, NamedPart, PartRules, Sheet, Weights, read};
 pub use shop::ShopFile;
 pub use source::Mark;
+pub use start::starting_sheet;

@@ -246,7 +246,7 @@ fn read_row<T: Figures>(
         }
         (_, price) => {
             rows.unproven.push(Unproven {
-                file: 0,
+                file,
                 line,
                 part,
                 maker,
