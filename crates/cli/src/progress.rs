@@ -42,8 +42,8 @@ pub(crate) fn watched<T>(
                 if steps > 0 && bar.length().is_none() {
                     bar.set_length(STEPS);
                     // A template that can't be read leaves the usual look.
-                    if let Ok(style) = ProgressStyle::with_template("{msg} [{bar:30}] {percent} %")
-                    {
+                    let template = "{msg} [{bar:30}] {percent} %, about {eta} left";
+                    if let Ok(style) = ProgressStyle::with_template(template) {
                         bar.set_style(style.progress_chars("=> "));
                     }
                 }
