@@ -96,7 +96,7 @@ impl Cli {
             Command::Plot(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
-            Command::New(arguments) => arguments.showing,
+            Command::New(arguments) => arguments.showing(),
             Command::Completions(arguments) => arguments.showing,
             Command::Man(arguments) => arguments.showing,
         }

@@ -59,6 +59,7 @@ fn part(name: &str, sources: &[Source]) -> io::Result<String> {
         "columns of the catalogs" => Ok(one_level_down(&catalog::reference::reference_markdown())),
         "keys of sheets" => Ok(sheet::reference_markdown()),
         "built-in policies" => Ok(policies()),
+        "the library example" => library_example(),
         _ if name.starts_with("columns of ") => {
             let table = name.trim_start_matches("columns of ");
             report::reference::columns_markdown(table)
@@ -69,6 +70,13 @@ fn part(name: &str, sources: &[Source]) -> io::Result<String> {
             None => Err(fault(format!("nothing is known by the name `{name}`"))),
         },
     }
+}
+
+/// The source of the example that uses the crates without the command line.
+fn library_example() -> io::Result<String> {
+    const FILE: &str = "crates/report/examples/rail_in_code.rs";
+    let source = std::fs::read_to_string(crate::root().join(FILE))?;
+    Ok(format!("`{FILE}`:\n\n```rust\n{source}```\n"))
 }
 
 /// Headings one level further down, so that a page can stand inside another.

@@ -117,3 +117,28 @@ fn the_summary_lists_every_page_of_the_docs() {
         }
     }
 }
+
+#[test]
+fn the_book_is_made_of_the_summary() {
+    let book = std::fs::read_to_string(root().join("book.toml")).expect("book.toml");
+    let book = toml::de::DeTable::parse(&book).expect("TOML").into_inner();
+    let of_book = |key: &str| book.get("book")?.get_ref().get(key)?.get_ref().as_str();
+    assert_eq!(of_book("src"), Some("docs"), "where the pages are");
+    assert!(of_book("title").is_some_and(|title| !title.is_empty()));
+
+    let summary = Page::read(&root(), "docs/SUMMARY.md").expect("the summary");
+    let chapters = summary.links();
+    let mut once = chapters.clone();
+    once.sort();
+    once.dedup();
+    assert_eq!(once.len(), chapters.len(), "a page stands twice: {chapters:?}");
+    // The book program takes lists of links and headings, and stops at anything else.
+    for line in summary.text.lines().filter(|line| !line.trim().is_empty()) {
+        let line = line.trim_start();
+        assert!(line.starts_with("# ") || line.starts_with("- ["), "docs/SUMMARY.md: {line}");
+    }
+    for chapter in chapters {
+        let page = Page::read(&root(), &format!("docs/{chapter}")).expect("a page of the book");
+        assert!(page.text.starts_with("# "), "{chapter} begins with its title");
+    }
+}

@@ -1,6 +1,6 @@
 //! A rail sheet to begin with, made from the declarations of the keys.
 
-use crate::keys::{self, Applies, Fallback, Key};
+use crate::keys::{self, Applies, Fallback, Key, Kind};
 use std::fmt::Write as _;
 
 /// Values for the keys that a sheet must give: those of a small rail.
@@ -47,7 +47,7 @@ fn push_key(text: &mut String, key: &Key) {
         Applies::Without(other) => format!("; only without {}", other.name),
     };
     // Writing to a text can't fail.
-    let _ = writeln!(text, "\n# {}{when}: {}", key.meaning, key.expects());
+    let _ = writeln!(text, "\n# {}{when}\n#   {}", key.meaning, takes(key));
     let name = key.short_name();
     let example = EXAMPLES.iter().find(|(known, _)| *known == key).map(|(_, value)| *value);
     let _ = match (example, key.default_as_toml()) {
@@ -58,6 +58,14 @@ fn push_key(text: &mut String, key: &Key) {
         }
         (None, None) => writeln!(text, "#{name} = … (without it: {})", key.default_in_words()),
     };
+}
+
+/// What a key takes, in words for somebody who fills it in.
+fn takes(key: &Key) -> String {
+    match key.kind {
+        Kind::Count(least) => format!("a whole number from {least} on"),
+        _ => key.expects(),
+    }
 }
 
 #[cfg(test)]

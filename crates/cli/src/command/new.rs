@@ -18,8 +18,15 @@ use std::path::{Path, PathBuf};
 pub(crate) struct Arguments {
     #[command(subcommand)]
     what: What,
-    #[command(flatten)]
-    pub(super) showing: Showing,
+}
+
+impl Arguments {
+    /// What is to be shown, and how.
+    pub(super) fn showing(&self) -> Showing {
+        match &self.what {
+            What::Sheet { showing, .. } | What::Shop { showing, .. } => *showing,
+        }
+    }
 }
 
 const EXAMPLES: &str = "\
@@ -39,6 +46,8 @@ enum What {
         /// The file to write (.toml), or a folder to write rail.toml into
         #[arg(value_name = "FILE|DIR")]
         path: PathBuf,
+        #[command(flatten)]
+        showing: Showing,
     },
     /// Write a folder of catalogs with all columns and an invented part in each
     ///
@@ -49,6 +58,8 @@ enum What {
         /// The folder to write into; it is made where it isn't there
         #[arg(value_name = "DIR")]
         folder: PathBuf,
+        #[command(flatten)]
+        showing: Showing,
     },
 }
 
@@ -84,12 +95,12 @@ currency = \"EUR\"
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
     match &arguments.what {
-        What::Sheet { path } => {
+        What::Sheet { path, .. } => {
             let is_file = path.extension().is_some_and(|ending| ending == "toml");
             let path = if is_file { path.clone() } else { in_folder(path)?.join(SHEET_FILE) };
             write_all(&[(path, sheet::starting_sheet())], screen)
         }
-        What::Shop { folder } => {
+        What::Shop { folder, .. } => {
             let folder = in_folder(folder)?;
             let catalogs =
                 Kind::ALL.map(|kind| (folder.join(kind.file_name()), starting_file(kind)));
