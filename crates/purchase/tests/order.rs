@@ -3,6 +3,7 @@
 use catalog::{Kind, Price, Status};
 use circuit::slot::Slot;
 use design::keys::Resistor;
+use proptest::prelude::*;
 use purchase::article::{Article, Nominal};
 use purchase::order::{Line, Need, Order, Supply};
 use purchase::piece::Piece;
@@ -137,4 +138,47 @@ fn as_many_boards_as_there_are_numbers_are_no_fault() {
     let pieces = vec![resistor(Resistor::Rf, line, 1.0), resistor(Resistor::Ri, line, 1.0)];
     let order = Order::new(&[Need { boards: u64::MAX, pieces }]);
     assert_eq!(order.lines[0].pieces, u64::MAX);
+}
+
+// ---- whatever is bought ----
+
+const PARTS: [&str; 3] = ["Z1", "Z2", "Z3"];
+
+/// Prices that fall with the quantity, in thousandths.
+fn falling_prices() -> impl Strategy<Value = Price> {
+    (1u32..2000, 0u32..500, 0u32..500, 2u64..40, 40u64..200).prop_map(
+        |(last, b, a, second, third)| {
+            let of = |thousandths: u32| f64::from(thousandths) / 1000.0;
+            let breaks = [(1, of(last + a + b)), (second, of(last + b)), (third, of(last))];
+            Price::breaks(&breaks).expect("rising quantities")
+        },
+    )
+}
+
+proptest! {
+    #[test]
+    fn rails_add_up_to_the_total_and_together_is_never_dearer(
+        prices in proptest::array::uniform3(falling_prices()),
+        rails in proptest::collection::vec((1u64..120, proptest::collection::vec(0usize..3, 1..6)), 1..5),
+    ) {
+        let need = |(boards, parts): &(u64, Vec<usize>)| {
+            let of = |part: &usize| {
+                piece(Slot::Zener, article(Kind::Zeners, PARTS[*part], Some(&prices[*part])))
+            };
+            Need { boards: *boards, pieces: parts.iter().map(of).collect() }
+        };
+        let needs: Vec<Need<'_>> = rails.iter().map(need).collect();
+        let order = Order::new(&needs);
+        let together: purchase::money::Money =
+            order.rails.iter().map(|rail| rail.together.clone()).sum();
+        prop_assert_eq!(together.amount(), order.total.amount());
+        for rail in &order.rails {
+            prop_assert!(rail.together <= rail.alone);
+        }
+        let asked: u64 = rails.iter().map(|(boards, parts)| boards * parts.len() as u64).sum();
+        prop_assert_eq!(order.lines.iter().map(|line| line.pieces).sum::<u64>(), asked);
+        let mut turned = needs.clone();
+        turned.reverse();
+        prop_assert_eq!(Order::new(&turned).total, order.total);
+    }
 }

@@ -11,6 +11,7 @@ use clap::Args;
 use report::notices::Warnings;
 use report::proof::{self, Verification};
 use report::purchase::lines::RailLines;
+use report::table::Document;
 use report::{dossier, markdown, workbook};
 use std::path::PathBuf;
 
@@ -93,10 +94,15 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     };
 
     for target in &arguments.out {
+        let in_tables = || in_tables(&verification, &desk, &on_desk);
         let bytes = match target.format {
             Format::Json => proof::json(&verification).map_err(|e| Fault::Defect(e.to_string()))?,
             Format::Html => page::of_designs(&verification, &desk, &on_desk, screen)?,
-            _ => in_tables(&verification, &desk, &on_desk, target.format)?,
+            Format::Xlsx => {
+                workbook::document(&in_tables()).map_err(|e| Fault::Defect(e.to_string()))?
+            }
+            Format::Md => markdown::document(&in_tables()).into_bytes(),
+            Format::Csv => return Err(Fault::Defect("no CSV of proofs".to_owned())),
         };
         write_whole(&target.path, &bytes, arguments.overwrite)?;
         screen.mention(&format!("wrote {}", target.path.display()));
@@ -113,18 +119,13 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     }
 }
 
-/// The proofs with their order lines, as tables in one file.
+/// The proofs with their order lines, as tables for one file.
 fn in_tables(
     verification: &Verification,
     desk: &Desk<'_>,
     on_desk: &[Result<OnDesk, Option<String>>],
-    format: Format,
-) -> Result<Vec<u8>, Fault> {
+) -> Document {
     let readable = on_desk.iter().filter_map(|read| read.as_ref().ok());
     let lines: Vec<RailLines> = readable.filter_map(|design| of_design(design, desk)).collect();
-    let document = dossier::designs::document(verification, &lines);
-    match format {
-        Format::Xlsx => workbook::document(&document).map_err(|e| Fault::Defect(e.to_string())),
-        _ => Ok(markdown::document(&document).into_bytes()),
-    }
+    dossier::designs::document(verification, &lines)
 }
