@@ -46,8 +46,12 @@ pub fn read_shop(folder: &Path) -> Result<Shop, WorkloadError> {
 /// # Errors
 /// The faults that the reader found.
 pub fn take_sheet(name: &str, text: &str) -> Result<Sheet, WorkloadError> {
+    take_sheet_set(name, text, &[])
+}
+
+fn take_sheet_set(name: &str, text: &str, set: &[String]) -> Result<Sheet, WorkloadError> {
     let mut notices = Vec::new();
-    sheet::read(name, text, &ShopFile::empty(), &[], &mut notices)
+    sheet::read(name, text, &ShopFile::empty(), set, &mut notices)
         .ok_or(WorkloadError::Faulty(notices))
 }
 
@@ -56,9 +60,17 @@ pub fn take_sheet(name: &str, text: &str) -> Result<Sheet, WorkloadError> {
 /// # Errors
 /// Where the file cannot be opened or has faults.
 pub fn read_sheet(path: &Path) -> Result<Sheet, WorkloadError> {
+    read_sheet_set(path, &[])
+}
+
+/// Reads a rail sheet of which some values are set otherwise (`load.max_a=1.5`).
+///
+/// # Errors
+/// Where the file cannot be opened, or it or a value has faults.
+pub fn read_sheet_set(path: &Path, set: &[String]) -> Result<Sheet, WorkloadError> {
     let text = std::fs::read_to_string(path)
         .map_err(|error| WorkloadError::Open(path.to_owned(), error))?;
-    take_sheet(&path.display().to_string(), &text)
+    take_sheet_set(&path.display().to_string(), &text, set)
 }
 
 /// What some work returned, and how long it took.

@@ -41,7 +41,7 @@ pub(crate) fn cures_in_company(
     kind: Kind,
     slot: Slot,
     problem: &Problem<'_>,
-    misses: &[&Miss],
+    misses: &[Miss],
     boards: u64,
 ) -> Result<Vec<CellCure>, SearchError> {
     let mut cures: Vec<CellCure> = Vec::new();

@@ -1,25 +1,35 @@
 //! The smallest single changes of a sheet that admit a candidate.
 //!
-//! For each key that can be moved the nearest value on either side with which the search finds a
-//! candidate, values chosen again. Feasibility is not monotone in any key (model page, section 6), so
+//! For each key that can be moved the nearest value on either side with which there is a candidate,
+//! values chosen again. Feasibility is not monotone in any key (model page, section 6), so
 //! nothing is concluded from one value to another. Values are looked at on a grid that goes away from
 //! the sheet's own; between the first that admits a candidate and its neighbour the nearer end is
 //! refined:
 //!
-//! * with the candidate's parts and values fixed, its checks are solved for the key. Where the search
-//!   finds a candidate at the solution and none just short of it, the change is *exact*;
-//! * where values are chosen otherwise in between, the interval is halved, the search being run at each
-//!   half. Such a change is a *bracket*.
+//! * with a candidate's parts and values fixed, its checks are solved for the key. Where there is a
+//!   candidate at the solution and none just short of it, the change is *exact*;
+//! * where values are chosen otherwise in between, the interval is halved, a candidate being looked for
+//!   at each half. Such a change is a *bracket*.
+//!
+//! On the way any candidate will do; the best is searched for once, at the value that is told.
 
+use crate::check_set::CheckSet;
+use crate::company::Company;
 use crate::fixed::Fixed;
 use crate::lever::{Follows, Lever};
-use crate::probe::{Admitted, Market};
+use crate::limits::Limits;
+use crate::probe::{Admitted, Market, best};
+use crate::scout::{
+    Driver, Known, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, Power, Suited,
+    drivers_of, find_knowing, powers,
+};
 use crate::survey::Survey;
 use circuit::check::Check;
 use circuit::rail::Rail;
 use quantity::notation::Unit;
+use rayon::prelude::*;
 use select::SearchError;
-use select::ranking::{NO_SPREAD, shortlist};
+use select::problem::Problem;
 use sheet::bounds::{Bounds, End};
 
 /// A way in which a key can be moved.
@@ -81,8 +91,8 @@ pub struct KeyChanges {
 /// its distance from the neighbour that admits nothing where that is more.
 pub const JUST_SHORT: f64 = 1e-7;
 
-/// The search is run at most so often for each side of a key.
-pub const MOST_PROBES: usize = 48;
+/// A candidate is looked for at most so often for each side of a key.
+pub const MOST_PROBES: usize = 64;
 
 /// A bracket is narrowed until its ends differ by this share, as long as probes are left.
 const NARROW: f64 = 1e-4;
@@ -116,36 +126,65 @@ const FROM_ABOVE: [f64; 19] = [
 const FROM_ZERO: [f64; 14] =
     [1e-7, 1e-6, 1e-5, 5e-5, 1e-4, 2e-4, 5e-4, 1e-3, 2e-3, 5e-3, 1e-2, 2e-2, 5e-2, 0.1];
 
-/// What each of these keys can do for a rail for which nothing qualifies.
+/// What each of these keys can do for the rail of a problem for which nothing qualifies.
 ///
-/// `survey` of the rail as it is spares the search for keys that touch too little; without it every
-/// key is tried.
+/// `survey`, of the same problem, spares keys that touch too little. The keys are looked at side by
+/// side.
 ///
 /// # Errors
 /// What the search gives up with.
 pub fn changes(
-    market: &impl Market,
-    rail: &Rail,
+    market: &(impl Market + Sync),
     follows: Follows,
     levers: &[&'static Lever],
-    survey: Option<&Survey>,
+    survey: &Survey<'_>,
 ) -> Result<Vec<KeyChanges>, SearchError> {
-    levers
-        .iter()
-        .map(|&lever| {
-            let from = lever.value(rail);
-            let may_help = lever.moves_eligibility
-                || survey.is_none_or(|survey| survey.fails_within(lever.touches));
-            let mut found = Vec::new();
-            if may_help {
-                for side in [Side::Below, Side::Above] {
-                    let mut walk = Walk { market, rail, follows, lever, from, side, probes: 0 };
-                    found.extend(walk.nearest()?);
-                }
-            }
-            Ok(KeyChanges { lever, from, changes: found, was_tried: may_help })
-        })
-        .collect()
+    let at_rest = AtRest::new(survey.company());
+    let rail = survey.company().rail();
+    let of_key = |&lever: &&'static Lever| {
+        let from = lever.value(rail);
+        let was_tried = lever.moves_eligibility || survey.fails_within(lever.touches);
+        let sides: &[Side] = if was_tried { &[Side::Below, Side::Above] } else { &[] };
+        let nearest = |&side: &Side| {
+            let at_rest = &at_rest;
+            Walk { market, at_rest, rail, follows, lever, from, side, probes: 0 }.nearest()
+        };
+        let found: Result<Vec<Option<Change>>, SearchError> =
+            sides.par_iter().map(nearest).collect();
+        let changes = found?.into_iter().flatten().collect();
+        Ok(KeyChanges { lever, from, changes, was_tried })
+    };
+    levers.par_iter().map(of_key).collect()
+}
+
+/// What stands at the rail as it is, for keys that leave it alone.
+struct AtRest<'b, 'p> {
+    company: &'b Company<'p>,
+    powers: Vec<Power>,
+    drivers: Vec<Driver>,
+    suited: Suited,
+}
+
+impl<'b, 'p> AtRest<'b, 'p> {
+    fn new(company: &'b Company<'p>) -> Self {
+        let powers = powers(company, &Limits::ALL);
+        let drivers = drivers_of(company, &Limits::ALL, &powers);
+        Self { company, powers, drivers, suited: Suited::default() }
+    }
+
+    /// What stays as it is when a key moves: what meets only checks that the key does not touch.
+    fn known(&self, lever: &Lever) -> Known<'_> {
+        if lever.moves_eligibility {
+            return Known::default();
+        }
+        let moves = |checks: CheckSet| lever.touches.meets(checks);
+        let moves_drive = moves(OF_POWER) || moves(OF_DRIVE) || moves(OF_SUPPLY);
+        Known {
+            powers: (!moves(OF_POWER)).then_some(&self.powers[..]),
+            drivers: (!moves_drive).then_some(&self.drivers[..]),
+            suited: (!moves(OF_REFERENCE.and(OF_MEETING))).then_some(&self.suited),
+        }
+    }
 }
 
 /// The values of a grid, nearest first, within the bounds and with a closed end of theirs.
@@ -178,8 +217,9 @@ fn grid(lever: &Lever, from: Option<f64>, side: Side, bounds: Bounds) -> Vec<f64
 }
 
 /// The search for the nearest value on one side.
-struct Walk<'w, M> {
+struct Walk<'w, 'p, M> {
     market: &'w M,
+    at_rest: &'w AtRest<'w, 'p>,
     rail: &'w Rail,
     follows: Follows,
     lever: &'static Lever,
@@ -195,34 +235,39 @@ struct Solution {
     check: Check,
 }
 
-/// A value that admits a candidate, with the candidate and, where its checks can be solved for the
-/// key, the solution.
+/// A value that admits a candidate and, where the checks of that one can be solved for the key, the
+/// solution.
+#[derive(Debug, Clone, Copy)]
 struct Found {
     value: f64,
-    candidate: Admitted,
     solution: Option<Solution>,
 }
 
-impl<M: Market> Walk<'_, M> {
+impl<M: Market> Walk<'_, '_, M> {
     fn moved(&self, value: f64) -> Rail {
         self.lever.moved(self.rail, value, self.follows)
     }
 
-    /// Runs the search at a value. Between it and `short`, at which nothing qualified, the candidate's
-    /// checks are solved for the key.
-    fn probe(&mut self, value: f64, short: Option<f64>) -> Result<Option<Found>, SearchError> {
+    /// Looks for any candidate at a value. Between it and `short`, at which nothing qualified, the
+    /// candidate's checks are solved for the key.
+    fn probe(&mut self, value: f64, short: Option<f64>) -> Option<Found> {
         self.probes += 1;
         let rail = self.moved(value);
-        self.market.with_problem(&rail, |problem| {
-            let list = shortlist(problem, 1, &NO_SPREAD)?;
-            let Some(candidate) = list.first() else { return Ok(None) };
+        let look = |problem: &Problem<'_>| {
+            let company = Company::new(problem);
+            let known = self.at_rest.known(self.lever);
+            let places = find_knowing(&company, &Limits::ALL, known)?;
             let solution = short.and_then(|short| {
-                let fixed = Fixed::new(candidate, problem)?;
+                let fixed = Fixed::new(&company.chosen(&places)?, problem)?;
                 self.solve(&fixed, short, value)
             });
-            let candidate = Admitted::of(candidate, problem);
-            Ok(Some(Found { value, candidate, solution }))
-        })
+            Some(Found { value, solution })
+        };
+        if self.lever.moves_eligibility {
+            self.market.with_problem(&rail, look)
+        } else {
+            look(&Problem { rail: &rail, ..self.at_rest.company.problem.clone() })
+        }
     }
 
     /// The figure nearest to `short` at which all checks hold; None where they hold at `short` too.
@@ -246,9 +291,9 @@ impl<M: Market> Walk<'_, M> {
         // Nothing is nearer than the sheet's own value, at which nothing qualifies.
         let mut short = self.from.filter(|from| from.is_finite());
         for value in grid(self.lever, self.from, self.side, bounds) {
-            let found = self.probe(value, short)?;
-            if let Some(found) = found {
-                return self.refine(found, short).map(Some);
+            if let Some(found) = self.probe(value, short) {
+                let (value, threshold) = self.refine(found, short);
+                return self.change(value, threshold);
             }
             short = Some(value);
         }
@@ -256,71 +301,76 @@ impl<M: Market> Walk<'_, M> {
     }
 
     /// The nearer end between a value that admits a candidate and one that does not.
-    fn refine(&mut self, mut found: Found, short: Option<f64>) -> Result<Change, SearchError> {
+    fn refine(&mut self, mut found: Found, short: Option<f64>) -> (f64, Threshold) {
         // The least change there is: nothing lies between it and no limit at all.
         let Some(mut short) = short else {
             let threshold = Threshold::Bracket { short: self.from.unwrap_or(f64::INFINITY) };
-            return Ok(self.change(found, threshold));
+            return (found.value, threshold);
         };
         while self.probes < MOST_PROBES {
-            if let Some(solution) = found.solution {
+            let lies_between =
+                |s: &Solution| (s.at - short) * (found.value - short) > 0.0 || s.at == found.value;
+            if let Some(solution) = found.solution.filter(lies_between) {
                 // At 0 a share of the figure itself would be no step at all.
                 let size = solution.at.abs().max((solution.at - short).abs());
                 let before = solution.at + (short - solution.at).signum() * JUST_SHORT * size;
                 let before =
                     if (before - short) * (solution.at - short) <= 0.0 { short } else { before };
-                let at_solution = self.probe(solution.at, Some(short))?;
-                let nearer = if before == short { None } else { self.probe(before, Some(short))? };
-                match (at_solution, nearer) {
-                    (_, Some(nearer)) => found = nearer,
-                    (Some(at), None) => {
-                        let Solution { at: figure, check } = solution;
-                        let rounded = self.rounded(at)?;
-                        return Ok(self.change(
-                            rounded,
-                            Threshold::Exact { at: figure, short: before, check },
-                        ));
-                    }
-                    (None, None) => {
-                        // Other values are chosen between the solution and the candidate.
-                        short = solution.at;
-                        found.solution = None;
-                    }
+                let nearer = if before == short { None } else { self.probe(before, Some(short)) };
+                if let Some(nearer) = nearer {
+                    found = nearer;
+                    // Many candidates may begin to hold one just before the other.
+                    self.halve(&mut found, &mut short);
+                } else if solution.at == found.value || self.probe(solution.at, None).is_some() {
+                    let Solution { at, check } = solution;
+                    let threshold = Threshold::Exact { at, short: before, check };
+                    return (self.rounded(at), threshold);
+                } else {
+                    // Other values are chosen between the solution and the candidate.
+                    short = solution.at;
+                    found.solution = None;
                 }
                 continue;
             }
             if (found.value - short).abs() <= NARROW * found.value.abs() {
                 break;
             }
-            let middle = short + (found.value - short) / 2.0;
-            match self.probe(middle, Some(short))? {
-                Some(nearer) => found = nearer,
-                None => short = middle,
-            }
+            self.halve(&mut found, &mut short);
         }
-        let rounded = self.rounded(found)?;
-        Ok(self.change(rounded, Threshold::Bracket { short }))
+        (self.rounded(found.value), Threshold::Bracket { short })
     }
 
-    fn change(&self, found: Found, threshold: Threshold) -> Change {
-        Change { side: self.side, value: found.value, threshold, candidate: found.candidate }
+    /// Looks half-way between a value that admits a candidate and one that does not.
+    fn halve(&mut self, found: &mut Found, short: &mut f64) {
+        let middle = *short + (found.value - *short) / 2.0;
+        if middle == *short || middle == found.value {
+            return;
+        }
+        match self.probe(middle, Some(*short)) {
+            Some(nearer) => *found = nearer,
+            None => *short = middle,
+        }
+    }
+
+    /// The change to a value, with the best candidate there.
+    fn change(&self, value: f64, threshold: Threshold) -> Result<Option<Change>, SearchError> {
+        let candidate = best(self.market, &self.moved(value))?;
+        Ok(candidate.map(|candidate| Change { side: self.side, value, threshold, candidate }))
     }
 
     /// The value rounded away from the sheet's own as far as that still admits a candidate.
-    fn rounded(&mut self, found: Found) -> Result<Found, SearchError> {
+    fn rounded(&mut self, admits: f64) -> f64 {
         let bounds = self.lever.bounds(self.rail, self.follows);
         for digits in DIGITS {
-            let value = round_away(found.value, digits, self.side);
-            if value == found.value {
+            let value = round_away(admits, digits, self.side);
+            if value == admits {
                 break;
             }
-            if bounds.contain(value)
-                && let Some(rounded) = self.probe(value, None)?
-            {
-                return Ok(rounded);
+            if bounds.contain(value) && self.probe(value, None).is_some() {
+                return value;
             }
         }
-        Ok(found)
+        admits
     }
 }
 

@@ -9,15 +9,18 @@ use circuit::assembly::{Aim, Network, choose_divider, input_checks, supply_check
 use circuit::check::{Finding, Tally};
 use circuit::divider::{Divider, NO_VALUE_IN_WINDOW};
 use circuit::drive;
+use circuit::parts::{Amplifier, Heatsink, Zener};
 use circuit::pass::{CaseTemperatures, Duty, Mounted, PassFigures, Unmounted};
 use circuit::rail::Rail;
 use circuit::reference::{Bias, Chosen, ZenerAtRail, chosen_rz};
 use circuit::resistor::{LineAtRail, PotAtRail};
 use circuit::slot::Slot;
 use rayon::prelude::*;
-use select::problem::Problem;
+use select::candidate::Candidate;
+use select::problem::{Part, PassPart, Problem};
 use std::collections::HashMap;
 use std::ops::ControlFlow;
+use std::sync::OnceLock;
 
 /// By `Slot as usize`: the place of a part in the problem's list; None for no part.
 pub type Places = [Option<u32>; Slot::COUNT];
@@ -42,53 +45,83 @@ pub(crate) struct Reference<'c> {
     pub line: u32,
     pub pot: Option<u32>,
     /// None where no value of the line lies in the window.
-    divider: Option<Divider>,
+    pub divider: Option<Divider>,
 }
 
 /// The parts of a problem at its rail.
 pub(crate) struct Company<'a> {
     pub problem: &'a Problem<'a>,
-    aim: Aim,
-    duty: Duty,
-    zeners: Vec<ZenerAtRail>,
-    bias_lines: Vec<LineAtRail>,
-    pub amplifiers: Vec<AmplifierAtRail>,
-    divider_lines: Vec<LineAtRail>,
-    pots: Vec<PotAtRail>,
-    pub passes: Vec<PassFigures>,
+    pub aim: Aim,
+    pub duty: Duty,
+    /// Worked out when they are first asked for: not every question meets every side.
+    zeners: OnceLock<Vec<ZenerAtRail>>,
+    amplifiers: OnceLock<Vec<AmplifierAtRail>>,
+    passes: OnceLock<Vec<PassFigures>>,
+    pub bias_lines: Vec<LineAtRail>,
+    pub divider_lines: Vec<LineAtRail>,
+    pub pots: Vec<PotAtRail>,
     /// The case on each heatsink.
     cases: Vec<CaseTemperatures>,
-    /// The heatsinks that take each package.
-    fitting: HashMap<&'a str, Vec<u32>>,
+    fitting: Fitting<'a>,
+}
+
+/// The heatsinks that take each package.
+#[derive(Default)]
+struct Fitting<'a> {
+    all: HashMap<&'a str, Vec<u32>>,
+    /// Without those to which another is as good: it is as cool, and it warms as slowly.
+    best: HashMap<&'a str, Vec<u32>>,
+}
+
+impl<'a> Fitting<'a> {
+    fn of(problem: &Problem<'a>) -> Self {
+        let mut all: HashMap<&str, Vec<u32>> = HashMap::new();
+        for (place, sink) in (0u32..).zip(&problem.heatsinks) {
+            for &package in &sink.fits {
+                let sinks = all.entry(package).or_default();
+                if sinks.last() != Some(&place) {
+                    sinks.push(place);
+                }
+            }
+        }
+        let figures = |place: &u32| problem.heatsinks.get(*place as usize).map(|s| s.part.figures);
+        let is_as_good = |a: &Heatsink, b: &Heatsink| {
+            let warms_as_slowly = match (a.cth_j_per_c, b.cth_j_per_c) {
+                (Some(a), Some(b)) => a >= b,
+                (a, b) => a.is_none() && b.is_none(),
+            };
+            a.rth_sa_c_per_w <= b.rth_sa_c_per_w && warms_as_slowly
+        };
+        let best_of = |sinks: &Vec<u32>| {
+            let mut best: Vec<(u32, &Heatsink)> = Vec::new();
+            for (place, sink) in sinks.iter().filter_map(|p| Some((*p, figures(p)?))) {
+                if !best.iter().any(|(_, known)| is_as_good(known, sink)) {
+                    best.retain(|(_, known)| !is_as_good(sink, known));
+                    best.push((place, sink));
+                }
+            }
+            best.into_iter().map(|(place, _)| place).collect()
+        };
+        let best = all.iter().map(|(package, sinks)| (*package, best_of(sinks))).collect();
+        Self { all, best }
+    }
 }
 
 impl<'a> Company<'a> {
     pub fn new(problem: &'a Problem<'a>) -> Self {
         let rail = problem.rail;
         let duty = Duty::new(rail);
-        let mut fitting: HashMap<&str, Vec<u32>> = HashMap::new();
-        for (place, sink) in (0u32..).zip(&problem.heatsinks) {
-            for &package in &sink.fits {
-                let sinks = fitting.entry(package).or_default();
-                if sinks.last() != Some(&place) {
-                    sinks.push(place);
-                }
-            }
-        }
         Self {
             problem,
             aim: Aim::of(rail),
             duty,
-            zeners: problem.zeners.iter().map(|z| ZenerAtRail::new(z.figures, rail)).collect(),
+            zeners: OnceLock::new(),
+            amplifiers: OnceLock::new(),
+            passes: OnceLock::new(),
             bias_lines: problem
                 .bias_lines
                 .iter()
                 .map(|l| LineAtRail::new(l.figures, rail))
-                .collect(),
-            amplifiers: problem
-                .amplifiers
-                .iter()
-                .map(|a| AmplifierAtRail::new(a.figures, rail))
                 .collect(),
             divider_lines: problem
                 .divider_lines
@@ -96,30 +129,32 @@ impl<'a> Company<'a> {
                 .map(|l| LineAtRail::new(l.figures, rail))
                 .collect(),
             pots: problem.pots.iter().map(|p| PotAtRail::new(p.figures, rail)).collect(),
-            passes: problem
-                .transistors
-                .iter()
-                .map(|t| PassFigures::new(t.part.figures, &duty, rail))
-                .collect(),
             cases: problem
                 .heatsinks
                 .iter()
                 .map(|s| CaseTemperatures::on_heatsink(s.part.figures, &duty, rail))
                 .collect(),
-            fitting,
+            fitting: Fitting::of(problem),
         }
+    }
+
+    pub fn zeners(&self) -> &[ZenerAtRail] {
+        let at_rail = |z: &Part<'_, Zener>| ZenerAtRail::new(z.figures, self.rail());
+        self.zeners.get_or_init(|| self.problem.zeners.iter().map(at_rail).collect())
+    }
+
+    pub fn amplifiers(&self) -> &[AmplifierAtRail] {
+        let at_rail = |a: &Part<'_, Amplifier>| AmplifierAtRail::new(a.figures, self.rail());
+        self.amplifiers.get_or_init(|| self.problem.amplifiers.iter().map(at_rail).collect())
+    }
+
+    pub fn passes(&self) -> &[PassFigures] {
+        let at_duty = |t: &PassPart<'_>| PassFigures::new(t.part.figures, &self.duty, self.rail());
+        self.passes.get_or_init(|| self.problem.transistors.iter().map(at_duty).collect())
     }
 
     pub fn rail(&self) -> &'a Rail {
         self.problem.rail
-    }
-
-    /// How many reference sides there are.
-    pub fn references(&self) -> u64 {
-        let pots = if self.rail().is_adjustable() { self.pots.len() } else { 1 };
-        [self.zeners.len(), self.bias_lines.len(), self.divider_lines.len(), pots]
-            .into_iter()
-            .fold(1u64, |product, n| product.saturating_mul(n as u64))
     }
 
     /// Every zener on every bias line, in the order of the lists.
@@ -137,7 +172,7 @@ impl<'a> Company<'a> {
                 })
                 .collect()
         };
-        let zeners: Vec<(u32, &ZenerAtRail)> = (0u32..).zip(&self.zeners).collect();
+        let zeners: Vec<(u32, &ZenerAtRail)> = (0u32..).zip(self.zeners()).collect();
         let by_zener: Vec<Vec<Biased>> = zeners.into_par_iter().map(on_line).collect();
         by_zener.into_iter().flatten().collect()
     }
@@ -167,7 +202,7 @@ impl<'a> Company<'a> {
     }
 
     /// The checks in which an amplifier meets a reference side.
-    fn input_checks(
+    pub fn input_checks(
         &self,
         reference: &Reference<'_>,
         amp: &AmplifierAtRail,
@@ -204,8 +239,22 @@ impl<'a> Company<'a> {
 
     /// Every way in which a transistor may be mounted, each with its heatsink.
     pub fn mountings(&self, transistor: usize) -> Vec<(Option<u32>, Mounted)> {
+        self.mountings_among(transistor, &self.fitting.all)
+    }
+
+    /// The same without heatsinks to which another is as good: nothing fails on that one that does
+    /// not fail on them.
+    pub fn best_mountings(&self, transistor: usize) -> Vec<(Option<u32>, Mounted)> {
+        self.mountings_among(transistor, &self.fitting.best)
+    }
+
+    fn mountings_among(
+        &self,
+        transistor: usize,
+        fitting: &HashMap<&str, Vec<u32>>,
+    ) -> Vec<(Option<u32>, Mounted)> {
         let (Some(part), Some(figures)) =
-            (self.problem.transistors.get(transistor), self.passes.get(transistor))
+            (self.problem.transistors.get(transistor), self.passes().get(transistor))
         else {
             return Vec::new();
         };
@@ -218,7 +267,7 @@ impl<'a> Company<'a> {
             let unmounted = Unmounted::new(part.part.figures, duty, rail);
             mountings.extend(unmounted.map(|u| (None, u.into())));
         }
-        let sinks = part.package.and_then(|package| self.fitting.get(package));
+        let sinks = part.package.and_then(|package| fitting.get(package));
         for &sink in sinks.into_iter().flatten() {
             if let Some(case) = self.cases.get(sink as usize) {
                 mountings.push((Some(sink), Mounted::on(*case, figures, duty)));
@@ -227,15 +276,45 @@ impl<'a> Company<'a> {
         mountings
     }
 
+    /// Every transistor that a heatsink takes, mounted on it.
+    pub fn on_heatsink(&self, sink: u32) -> impl Iterator<Item = (&PassFigures, Mounted)> {
+        let part = self.problem.heatsinks.get(sink as usize);
+        let case = self.cases.get(sink as usize);
+        let fits = move |t: &PassPart<'_>| {
+            t.package.is_some_and(|p| part.is_some_and(|sink| sink.fits.contains(&p)))
+        };
+        let transistors = self.problem.transistors.iter().zip(self.passes());
+        transistors
+            .filter(move |(t, _)| fits(t))
+            .filter_map(move |(_, pass)| Some((pass, Mounted::on(*case?, pass, &self.duty))))
+    }
+
     pub fn mounted_failing(&self, pass: &PassFigures, mounted: &Mounted) -> Failing {
         Failing::among(|t| pass.checks(mounted, &self.duty, self.rail(), t))
+    }
+
+    /// The same parts, but each single transistor made a darlington: with a second base-emitter voltage
+    /// as large as the first, and a saturation voltage that is higher by as much. Darlingtons are left
+    /// without a rating.
+    pub fn with_second_junction(problem: &'a Problem<'a>) -> Self {
+        let this = Self::new(problem);
+        let doubled = |pass: &PassFigures| match pass.junctions {
+            1 => PassFigures {
+                vbe_hi_v: 2.0 * pass.vbe_hi_v,
+                vce_sat_v: pass.vce_sat_v + pass.vbe_hi_v,
+                ..*pass
+            },
+            _ => PassFigures { vceo_v: 0.0, ..*pass },
+        };
+        let passes = OnceLock::from(this.passes().iter().map(doubled).collect::<Vec<_>>());
+        Self { passes, ..this }
     }
 
     /// Every check of a combination, in page order. None where the places are not of this problem, or
     /// the transistor can't be mounted so.
     pub fn findings(&self, places: &Places) -> Option<Vec<Finding>> {
         let index = |slot| at(places, slot);
-        let zener = self.zeners.get(index(Slot::Zener)?)?;
+        let zener = self.zeners().get(index(Slot::Zener)?)?;
         let bias_line = self.bias_lines.get(index(Slot::BiasLine)?)?;
         let bias = match chosen_rz(zener, bias_line, self.rail())? {
             Chosen::Holds(bias, _) | Chosen::Fails(bias, _) => bias,
@@ -243,9 +322,9 @@ impl<'a> Company<'a> {
         let biased = Biased { zener: 0, line: 0, bias, failing: Failing::default() };
         let line = places[Slot::DividerLine as usize]?;
         let reference = self.reference(&biased, line, places[Slot::Pot as usize])?;
-        let amp = self.amplifiers.get(index(Slot::Amplifier)?)?;
+        let amp = self.amplifiers().get(index(Slot::Amplifier)?)?;
         let transistor = index(Slot::Pass)?;
-        let pass = self.passes.get(transistor)?;
+        let pass = self.passes().get(transistor)?;
         let sink = places[Slot::Heatsink as usize];
         let mountings = self.mountings(transistor);
         let (_, mounted) = mountings.iter().find(|(s, _)| *s == sink)?;
@@ -257,6 +336,24 @@ impl<'a> Company<'a> {
         let _ = pass.checks(mounted, &self.duty, self.rail(), &mut findings);
         let _ = drive::checks(amp, pass, self.rail(), &mut findings);
         Some(findings)
+    }
+}
+
+impl Company<'_> {
+    /// The parts at these places with the values that are chosen for them, as far as they take part in
+    /// checks: what ranks a candidate is left at 0.
+    pub fn chosen(&self, places: &Places) -> Option<Candidate> {
+        let zener = self.zeners().get(at(places, Slot::Zener)?)?;
+        let bias_line = self.bias_lines.get(at(places, Slot::BiasLine)?)?;
+        let bias = match chosen_rz(zener, bias_line, self.rail())? {
+            Chosen::Holds(bias, _) | Chosen::Fails(bias, _) => bias,
+        };
+        let line = self.divider_lines.get(at(places, Slot::DividerLine)?)?;
+        let pot = at(places, Slot::Pot).and_then(|p| self.pots.get(p));
+        let divider = choose_divider(&self.aim, &bias, line, pot, self.rail()).divider()?;
+        let rz = bias.rz;
+        let (cost, loss, stress, score) = (0.0, 0.0, 0.0, 0.0);
+        Some(Candidate { places: *places, rz, divider, cost, loss, stress, score })
     }
 }
 

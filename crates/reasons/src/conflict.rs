@@ -25,24 +25,34 @@ pub struct Member {
 impl Conflict {
     /// A conflict with the fewest members; of several the first in the order of keys. None where a
     /// combination holds every check.
-    pub fn smallest(survey: &Survey, rail: &Rail) -> Option<Conflict> {
-        let missed: Vec<u32> =
-            survey.misses.iter().map(|miss| missed_requirements(miss.failing, rail)).collect();
-        if missed.contains(&0) {
-            return None;
-        }
-        let chosen = (0..=Requirement::ALL.len() as u32)
-            .find_map(|members| first_meeting_all(&missed, members))?;
-        let members = Requirement::ALL
-            .into_iter()
-            .filter(|&requirement| chosen & bit(requirement) != 0)
-            .filter_map(|requirement| {
-                let only_it = |m: &u32| m & chosen == bit(requirement);
-                let place = missed.iter().position(only_it)?;
-                Some(Member { requirement, without_it: survey.misses.get(place)?.clone() })
-            })
-            .collect();
-        Some(Conflict { members })
+    ///
+    /// A conflict meets what every combination misses. So the first and smallest set that meets what
+    /// the combinations seen so far miss is the answer if no combination keeps it; else the one that
+    /// does is seen too, and the next set is tried.
+    pub fn smallest(survey: &Survey<'_>, rail: &Rail) -> Option<Conflict> {
+        let mut missed: Vec<u32> = Vec::new();
+        let chosen = loop {
+            let chosen = (0..=Requirement::ALL.len() as u32)
+                .find_map(|members| first_meeting_all(&missed, members))?;
+            match survey.holding(asked(&of_bits(chosen), rail)) {
+                None => break chosen,
+                Some(seen) => {
+                    let misses = missed_requirements(seen.failing, rail);
+                    if misses == 0 {
+                        return None;
+                    }
+                    missed.push(misses);
+                }
+            }
+        };
+        let members = of_bits(chosen);
+        let member = |&requirement: &Requirement| {
+            let others: Vec<Requirement> =
+                members.iter().copied().filter(|r| *r != requirement).collect();
+            let without_it = nearest_keeping(survey, &others, rail)?;
+            Some(Member { requirement, without_it })
+        };
+        Some(Conflict { members: members.iter().filter_map(member).collect() })
     }
 
     /// The requirements alone.
@@ -51,9 +61,28 @@ impl Conflict {
     }
 }
 
+/// A combination that keeps these requirements, and of the others as many as can be added one after
+/// another in the order of keys; near to keeping the rest.
+fn nearest_keeping(survey: &Survey<'_>, kept: &[Requirement], rail: &Rail) -> Option<Miss> {
+    let mut kept = kept.to_vec();
+    for requirement in Requirement::ALL {
+        if !kept.contains(&requirement) {
+            kept.push(requirement);
+            if survey.holding(asked(&kept, rail)).is_none() {
+                kept.pop();
+            }
+        }
+    }
+    survey.nearest_within(CheckSet::ALL.without(asked(&kept, rail)))
+}
+
 /// The checks that are asked where only these requirements hold.
 pub fn asked(requirements: &[Requirement], rail: &Rail) -> CheckSet {
     requirements.iter().fold(CheckSet::EMPTY, |set, r| set.and(r.checks(rail)))
+}
+
+fn of_bits(bits: u32) -> Vec<Requirement> {
+    Requirement::ALL.into_iter().filter(|&requirement| bits & bit(requirement) != 0).collect()
 }
 
 const fn bit(requirement: Requirement) -> u32 {

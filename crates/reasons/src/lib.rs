@@ -4,7 +4,8 @@
 //! |---|---|
 //! | [`check_set`] | sets of checks, and what fails for a combination |
 //! | [`requirement`] | which key of the sheet each check is asked for |
-//! | [`survey`] | the least that fails of any combination |
+//! | [`limits`] | how far each check may go |
+//! | [`survey`] | which combination fails in fewest checks, and by how little |
 //! | [`losses`] | the parts of each slot that one check alone rules out |
 //! | [`conflict`] | a smallest set of requirements that can't hold together |
 //! | [`lever`] | keys of a sheet that can be moved one at a time |
@@ -18,7 +19,6 @@
 //!
 //! This crate holds no formula of the circuit, opens no file and prints nothing.
 
-mod antichain;
 pub mod cell;
 pub mod change;
 pub mod check_set;
@@ -29,12 +29,13 @@ mod filled;
 mod fixed;
 pub mod gaps;
 pub mod lever;
+pub mod limits;
 pub mod losses;
 pub mod names;
 pub mod nothing;
 pub mod part;
 pub mod probe;
 pub mod remedy;
-
 pub mod requirement;
+mod scout;
 pub mod survey;

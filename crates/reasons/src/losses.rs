@@ -5,8 +5,10 @@
 //! that is left may still be in no candidate: then it is the checks together that rule it out.
 
 use crate::check_set::CheckSet;
-use crate::company::{Company, Reference, best_at_input};
-use crate::survey::{MOST_MEETINGS, MOST_REFERENCES, TooMany};
+use crate::company::{Biased, Company};
+use crate::limits::Limits;
+use crate::scout::{Meeting, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, undominated};
+use circuit::amplifier::AmplifierAtRail;
 use circuit::check::Check;
 use circuit::pass::PassFigures;
 use circuit::slot::Slot;
@@ -46,20 +48,12 @@ pub fn concerns(slot: Slot, check: Check) -> bool {
 type Open = Vec<Option<CheckSet>>;
 
 /// What the parts of every slot that the sheet fills are lost to, in the order of slots.
-///
-/// # Errors
-/// [`TooMany`] where there are too many combinations to look through.
-pub fn losses(problem: &Problem<'_>) -> Result<Vec<SlotLosses>, TooMany> {
+pub fn losses(problem: &Problem<'_>) -> Vec<SlotLosses> {
     let company = Company::new(problem);
-    let too_many =
-        TooMany { references: company.references(), amplifiers: company.amplifiers.len() };
-    if too_many.references > MOST_REFERENCES {
-        return Err(too_many);
-    }
     let mut open = OpenChecks::new(problem);
-    open.meet_references(&company).ok_or(too_many)?;
+    open.meet_references(&company);
     open.meet_transistors(&company);
-    Ok(open.summed(problem))
+    open.summed(problem)
 }
 
 struct OpenChecks {
@@ -71,24 +65,6 @@ struct OpenChecks {
     transistors: Open,
     heatsinks: Open,
 }
-
-/// Checks of the reference with its bias line.
-const OF_REFERENCE: CheckSet = CheckSet::of(&[
-    Check::ZenerBias,
-    Check::ZenerPower,
-    Check::ZenerJunction,
-    Check::RzPower,
-    Check::RzVoltage,
-]);
-
-/// Checks of the amplifier's supply.
-const OF_SUPPLY: CheckSet = CheckSet::of(&[Check::AmpSupplyHigh, Check::AmpSupplyLow]);
-
-/// Checks in which an amplifier meets a reference side, all but those of the divider.
-const OF_INPUT: CheckSet = CheckSet::of(&[Check::AmpInputLow, Check::AmpInputHigh]);
-
-/// Checks in which an amplifier meets a reference side.
-const OF_MEETING: CheckSet = OF_INPUT.and(CheckSet::DIVIDER);
 
 impl OpenChecks {
     fn new(problem: &Problem<'_>) -> Self {
@@ -107,104 +83,144 @@ impl OpenChecks {
         }
     }
 
-    /// The reference side, and amplifiers beside it. None where that takes too many meetings.
-    fn meet_references(&mut self, company: &Company<'_>) -> Option<()> {
-        for (open, amp) in self.amplifiers.iter_mut().zip(&company.amplifiers) {
-            if let Some(open) = open {
-                *open = open.without(OF_SUPPLY.without(company.supply_failing(amp).set));
-            }
-        }
-        // Without amplifiers nothing meets a reference.
-        let Some(best) = best_at_input(&company.amplifiers) else { return Some(()) };
-        let dividers: Vec<(u32, Option<u32>)> = company.dividers().collect();
-        let all: Vec<usize> = (0..company.amplifiers.len()).collect();
-        let mut open = all.clone();
-        let mut meetings = 0u64;
-        for biased in company.biased() {
+    /// The reference side, and amplifiers beside it.
+    fn meet_references(&mut self, company: &Company<'_>) {
+        let biased = company.biased();
+        for biased in &biased {
             let held = OF_REFERENCE.without(biased.failing.set);
             close(&mut self.zeners, biased.zener as usize, held);
             close(&mut self.bias_lines, biased.line as usize, held);
-            for &(line, pot) in &dividers {
-                let Some(reference) = company.reference(&biased, line, pot) else { continue };
-                let may_hold = OF_MEETING.without(company.input_failing(&reference, &best).set);
-                // For the reference any amplifier will do beside which a check holds.
-                for &a in &all {
-                    if !self.open_of(&reference).meets(may_hold) {
-                        break;
-                    }
-                    self.meet(company, &reference, a);
-                    meetings += 1;
-                }
-                // Amplifiers with open checks are tried beside every reference.
-                open.retain(|&a| still(&self.amplifiers, Some(a)).meets(OF_MEETING));
-                for &a in &open {
-                    if still(&self.amplifiers, Some(a)).meets(may_hold) {
-                        self.meet(company, &reference, a);
-                        meetings += 1;
-                    }
-                }
-                if meetings > MOST_MEETINGS {
-                    return None;
-                }
+        }
+        for (open, amp) in self.amplifiers.iter_mut().zip(company.amplifiers()) {
+            let held = OF_SUPPLY.without(company.supply_failing(amp).set);
+            *open = open.map(|checks| checks.without(held));
+        }
+        self.meet_zeners(company, &biased);
+        self.meet_dividers(company, &biased);
+        self.meet_amplifiers(company, &biased);
+    }
+
+    /// Each zener beside the amplifiers.
+    fn meet_zeners(&mut self, company: &Company<'_>, biased: &[Biased]) {
+        let meetings = Meetings::of_all_amplifiers(company);
+        let Some(first) = meetings.first() else { return };
+        let by_zener: Vec<&[Biased]> = biased.chunk_by(|a, b| a.zener == b.zener).collect();
+        let still_open = |of_zener: &&[Biased]| {
+            // Most checks hold beside the first divider already.
+            let mut open = OF_MEETING;
+            if let (Some(biased), Some((line, pot))) = (of_zener.first(), company.dividers().next())
+                && let Some(reference) = company.reference(biased, line, pot)
+            {
+                open = first.always_failing(&reference, open);
+            }
+            let holds = |check: &Check| {
+                meetings.of(*check).is_some_and(|m| of_zener.iter().any(|b| m.suits(b, None, None)))
+            };
+            let held: CheckSet = open.iter().filter(holds).collect();
+            open.without(held)
+        };
+        let open: Vec<CheckSet> = by_zener.par_iter().map(still_open).collect();
+        for (of_zener, open) in by_zener.iter().zip(open) {
+            if let Some(biased) = of_zener.first() {
+                close(&mut self.zeners, biased.zener as usize, OF_MEETING.without(open));
             }
         }
-        Some(())
     }
 
-    /// The checks that are still open for some part of a reference.
-    fn open_of(&self, reference: &Reference<'_>) -> CheckSet {
-        still(&self.zeners, Some(reference.biased.zener as usize))
-            .and(still(&self.divider_lines, Some(reference.line as usize)))
-            .and(still(&self.pots, reference.pot.map(|pot| pot as usize)))
+    /// Each divider line and each pot beside zeners and amplifiers.
+    fn meet_dividers(&mut self, company: &Company<'_>, biased: &[Biased]) {
+        let meetings = Meetings::of_all_amplifiers(company);
+        let open_beside = |line: Option<u32>, pot: Option<u32>| {
+            let holds = |check: &Check| {
+                let suits = |meeting: &Meeting<'_, '_>| {
+                    biased.par_iter().any(|biased| meeting.suits(biased, line, pot))
+                };
+                meetings.of(*check).is_some_and(suits)
+            };
+            let held: CheckSet = CheckSet::DIVIDER.iter().filter(holds).collect();
+            Some(CheckSet::DIVIDER.without(held))
+        };
+        if meetings.first().is_some() {
+            let lines = 0..u32::try_from(self.divider_lines.len()).unwrap_or(u32::MAX);
+            self.divider_lines =
+                lines.into_par_iter().map(|line| open_beside(Some(line), None)).collect();
+            let pots = 0..u32::try_from(self.pots.len()).unwrap_or(u32::MAX);
+            self.pots = pots.into_par_iter().map(|pot| open_beside(None, Some(pot))).collect();
+        }
     }
 
-    /// Notes what holds where an amplifier meets a reference.
-    fn meet(&mut self, company: &Company<'_>, reference: &Reference<'_>, amplifier: usize) {
-        let Some(amp) = company.amplifiers.get(amplifier) else { return };
-        let held = OF_MEETING.without(company.input_failing(reference, amp).set);
-        close(&mut self.amplifiers, amplifier, held);
-        close(&mut self.zeners, reference.biased.zener as usize, held);
-        close(&mut self.divider_lines, reference.line as usize, held);
-        if let Some(pot) = reference.pot {
-            close(&mut self.pots, pot as usize, held);
+    /// Each amplifier beside all reference sides.
+    fn meet_amplifiers(&mut self, company: &Company<'_>, biased: &[Biased]) {
+        let held_by = |check: Check| -> Vec<CheckSet> {
+            let only = CheckSet::of(&[check]);
+            // One that is no worse than one that holds, holds; one that is no better than one that
+            // fails, fails. So few are held against the references themselves.
+            let mut holding: Vec<&AmplifierAtRail> = Vec::new();
+            let mut failing: Vec<&AmplifierAtRail> = Vec::new();
+            let mut holds = |(place, amp): (u32, _)| {
+                if holding.iter().any(|known| is_as_good(check, amp, known)) {
+                    return true;
+                }
+                if failing.iter().any(|known| is_as_good(check, known, amp)) {
+                    return false;
+                }
+                let limits = Limits::asking(only);
+                let meeting = Meeting::of_amplifiers(company, &limits, std::iter::once(place));
+                let holds = meeting
+                    .is_some_and(|m| biased.par_iter().any(|biased| m.suits(biased, None, None)));
+                if holds {
+                    holding.push(amp)
+                } else {
+                    failing.push(amp)
+                }
+                holds
+            };
+            let amplifiers = (0u32..).zip(company.amplifiers());
+            amplifiers.map(|amp| if holds(amp) { only } else { CheckSet::EMPTY }).collect()
+        };
+        for held in OF_MEETING.iter().map(held_by) {
+            for (place, held) in held.into_iter().enumerate() {
+                close(&mut self.amplifiers, place, held);
+            }
         }
     }
 
     /// The power side, and amplifiers that drive it.
     fn meet_transistors(&mut self, company: &Company<'_>) {
-        let mounted: Vec<Vec<(Option<u32>, CheckSet)>> = company
-            .passes
-            .par_iter()
-            .enumerate()
-            .map(|(t, pass)| {
-                let on = |(sink, m)| (sink, company.mounted_failing(pass, &m).set);
-                company.mountings(t).into_iter().map(on).collect()
+        let of_transistor = |(t, pass): (usize, &PassFigures)| {
+            // What fails on the best mountings fails on all.
+            let mountings = company.best_mountings(t);
+            let failing = |(_, mounted): &(_, _)| company.mounted_failing(pass, mounted).set;
+            let fails = mountings.iter().map(failing).reduce(CheckSet::in_both)?;
+            Some(OF_POWER.in_both(fails).and(OF_DRIVE))
+        };
+        self.transistors = company.passes().par_iter().enumerate().map(of_transistor).collect();
+        let places = 0..u32::try_from(self.heatsinks.len()).unwrap_or(u32::MAX);
+        self.heatsinks = places
+            .into_par_iter()
+            .map(|sink| {
+                let mut open = None;
+                for (pass, mounted) in company.on_heatsink(sink) {
+                    let fails = company.mounted_failing(pass, &mounted).set;
+                    let still: CheckSet = OF_POWER.in_both(open.unwrap_or(OF_POWER)).in_both(fails);
+                    open = Some(still);
+                    if still.is_empty() {
+                        break;
+                    }
+                }
+                open
             })
             .collect();
-        for (open, mountings) in self.transistors.iter_mut().zip(&mounted) {
-            if mountings.is_empty() {
-                continue;
-            }
-            let mut checks = OF_POWER.and(OF_DRIVE);
-            for &(sink, failing) in mountings {
-                let held = OF_POWER.without(failing);
-                checks = checks.without(held);
-                if let Some(of_sink) = sink.and_then(|s| self.heatsinks.get_mut(s as usize)) {
-                    *of_sink = Some(of_sink.unwrap_or(OF_POWER).without(held));
-                }
-            }
-            *open = Some(checks);
-        }
         self.meet_drive(company);
     }
 
     /// Amplifiers and the transistors that they drive.
     fn meet_drive(&mut self, company: &Company<'_>) {
-        let mounted = company.passes.iter().zip(&self.transistors);
+        let mounted = company.passes().iter().zip(&self.transistors);
         let mounted: Vec<&PassFigures> =
             mounted.filter(|(_, open)| open.is_some()).map(|(pass, _)| pass).collect();
         let best = best_to_drive(&mounted);
-        for (amp, open) in company.amplifiers.iter().zip(&mut self.amplifiers) {
+        for (amp, open) in company.amplifiers().iter().zip(&mut self.amplifiers) {
             for pass in &best {
                 let held = OF_DRIVE.without(company.drive_failing(amp, pass).set);
                 *open = open.map(|checks| checks.without(held));
@@ -214,14 +230,21 @@ impl OpenChecks {
                 *open = open.map(|checks| checks.without(OF_DRIVE));
             }
         }
-        // `amp-junction` meets several figures of the amplifier, so each is tried.
-        company.passes.par_iter().zip(&mut self.transistors).for_each(|(pass, open)| {
+        // Where a check holds with any amplifier it holds with one of the best for it.
+        let best_for = |check: Check| {
+            let amplifiers = company.amplifiers().iter();
+            undominated(amplifiers, |a, b| is_as_good(check, a, b))
+        };
+        let best: Vec<(Check, Vec<&AmplifierAtRail>)> =
+            OF_DRIVE.iter().map(|check| (check, best_for(check))).collect();
+        company.passes().par_iter().zip(&mut self.transistors).for_each(|(pass, open)| {
             let Some(checks) = open else { return };
-            for amp in &company.amplifiers {
-                if !checks.meets(OF_DRIVE) {
-                    break;
+            for (check, amplifiers) in &best {
+                let holds =
+                    |amp: &&AmplifierAtRail| !company.drive_failing(amp, pass).set.contains(*check);
+                if amplifiers.iter().any(holds) {
+                    *checks = checks.without(CheckSet::of(&[*check]));
                 }
-                *checks = checks.without(OF_DRIVE.without(company.drive_failing(amp, pass).set));
             }
         });
     }
@@ -259,29 +282,6 @@ impl OpenChecks {
     }
 }
 
-/// Checks of the transistor on its mounting.
-const OF_POWER: CheckSet = CheckSet::of(&[
-    Check::CollectorVoltage,
-    Check::CollectorCurrent,
-    Check::PassPower,
-    Check::PassJunction,
-    Check::SoaLoad,
-    Check::SoaFault,
-    Check::FaultJunction,
-    Check::Dropout,
-]);
-
-/// Checks in which an amplifier drives a transistor.
-const OF_DRIVE: CheckSet = CheckSet::of(&[
-    Check::BaseDrive,
-    Check::SwingHigh,
-    Check::SwingLow,
-    Check::AmpJunction,
-    Check::AmpFault,
-    Check::LeakageSink,
-    Check::NoLoad,
-]);
-
 /// Transistors that tell of every check in which an amplifier drives one whether any of these lets it
 /// hold. Each of these checks meets one figure of the transistor, so the best of each figure will do.
 /// Leakage counts by its size, by whether it is given, and by whether it passes the amplifier, so for
@@ -308,12 +308,66 @@ fn best_to_drive(passes: &[&PassFigures]) -> Vec<PassFigures> {
     kinds
 }
 
+/// What an amplifier lets this check find is no worse than what the other does, whatever stands beside
+/// them. Only for checks that an amplifier takes part in.
+fn is_as_good(check: Check, mine: &AmplifierAtRail, theirs: &AmplifierAtRail) -> bool {
+    let (a, b) = (&mine.part, &theirs.part);
+    match check {
+        Check::AmpInputLow => a.vcm_low_v <= b.vcm_low_v,
+        Check::AmpInputHigh => a.vcm_high_v <= b.vcm_high_v,
+        Check::BaseDrive => a.iout_a >= b.iout_a,
+        Check::SwingHigh => a.swing_high_v <= b.swing_high_v,
+        Check::SwingLow => a.swing_low_v <= b.swing_low_v,
+        Check::AmpJunction => {
+            a.iq_max_a <= b.iq_max_a
+                && a.rth_ja_c_per_w <= b.rth_ja_c_per_w
+                && mine.allowed_rise_c >= theirs.allowed_rise_c
+        }
+        Check::AmpFault => {
+            mine.fault_rise_c <= theirs.fault_rise_c
+                && mine.allowed_fault_rise_c >= theirs.allowed_fault_rise_c
+        }
+        // Where a data sheet is silent the check is not made.
+        Check::LeakageSink => match (a.isink_a, b.isink_a) {
+            (None, _) => true,
+            (Some(_), None) => false,
+            (Some(a), Some(b)) => a >= b,
+        },
+        Check::NoLoad => a.ib_max_a <= b.ib_max_a,
+        _ => {
+            mine.fixed_error_v <= theirs.fixed_error_v
+                && mine.common_mode <= theirs.common_mode
+                && a.ib_max_a <= b.ib_max_a
+        }
+    }
+}
+
+/// For each check in which an amplifier meets a reference side, that check alone asked of all
+/// amplifiers.
+struct Meetings<'m, 'c>(Vec<(Check, Meeting<'m, 'c>)>);
+
+impl<'m, 'c> Meetings<'m, 'c> {
+    /// Empty without amplifiers.
+    fn of_all_amplifiers(company: &'m Company<'c>) -> Self {
+        let all = 0..u32::try_from(company.amplifiers().len()).unwrap_or(u32::MAX);
+        let of_check = |check: Check| {
+            let limits = Limits::asking(CheckSet::of(&[check]));
+            Some((check, Meeting::of_amplifiers(company, &limits, all.clone())?))
+        };
+        Self(OF_MEETING.iter().filter_map(of_check).collect())
+    }
+
+    fn of(&self, check: Check) -> Option<&Meeting<'m, 'c>> {
+        self.0.iter().find(|(c, _)| *c == check).map(|(_, meeting)| meeting)
+    }
+
+    fn first(&self) -> Option<&Meeting<'m, 'c>> {
+        self.0.first().map(|(_, meeting)| meeting)
+    }
+}
+
 fn close(open: &mut Open, place: usize, held: CheckSet) {
     if let Some(Some(checks)) = open.get_mut(place) {
         *checks = checks.without(held);
     }
-}
-
-fn still(open: &Open, place: Option<usize>) -> CheckSet {
-    place.and_then(|p| open.get(p).copied().flatten()).unwrap_or_default()
 }

@@ -1,13 +1,14 @@
 //! Why a part is not on the list, or where it is.
 
 use crate::cell::{CellCure, cures_in_company};
-use crate::change::KeyChanges;
+use crate::change::{KeyChanges, changes};
 use crate::check_set::CheckSet;
 use crate::filled::{Cells, slots_of};
+use crate::lever::Follows;
 use crate::names::{Entry, State};
-use crate::nothing::{Cures, cures};
+use crate::nothing::levers;
 use crate::probe::{Admitted, Name, ShopMarket, keep_only, name_at};
-use crate::survey::{Miss, TooMany};
+use crate::survey::{Miss, Survey};
 use catalog::{Kind, Shop};
 use circuit::check::{Check, Finding};
 use circuit::slot::Slot;
@@ -92,8 +93,6 @@ pub struct Infeasible {
     pub keys: Vec<KeyChanges>,
     /// Cells of the part that would let it in, other parts being those of one of `nearest`.
     pub cells: Vec<CellCure>,
-    /// There were too many combinations to look through: nothing but the keys is known.
-    pub too_many: Option<TooMany>,
 }
 
 /// A combination that fails, by name.
@@ -273,30 +272,19 @@ fn infeasible(
         shop: rows.shop,
         only: Some((slot, &entry.maker, &entry.part)),
     };
-    let (survey, keys) = match cures(&market) {
-        Ok(found) => found,
-        Err(Cures::Search(error)) => return Err(error),
-        Err(Cures::TooMany(too_many)) => {
-            return Ok(Reason::Infeasible(Box::new(Infeasible {
-                alone: Vec::new(),
-                nearest: Vec::new(),
-                keys: Vec::new(),
-                cells: Vec::new(),
-                too_many: Some(too_many),
-            })));
-        }
-    };
-    let alone =
-        survey.misses.iter().map(|miss| miss.failing).reduce(CheckSet::in_both).unwrap_or_default();
-    let nearest: Vec<&Miss> = survey.misses.iter().take(MOST_MISSES).collect();
+    let survey = Survey::new(pinned);
+    let keys = changes(&market, Follows::of(rows.sheet), &levers(&market), &survey)?;
+    let nearest = survey.nearest(MOST_MISSES);
+    let in_all = nearest.iter().map(|miss| miss.failing).reduce(CheckSet::in_both);
+    let alone = in_all.unwrap_or_default();
+    let fails_always = |check: &Check| survey.holding(CheckSet::of(&[*check])).is_none();
     let cells = Cells::of(rows.shop, entry.kind, entry.file, entry.line);
     let boards = rows.sheet.boards;
     let cured = cures_in_company(&cells, entry.kind, slot, pinned, &nearest, boards)?;
     Ok(Reason::Infeasible(Box::new(Infeasible {
-        alone: alone.iter().collect(),
-        nearest: nearest.into_iter().map(|miss| NamedMiss::of(miss, pinned)).collect(),
+        alone: alone.iter().filter(fails_always).collect(),
+        nearest: nearest.iter().map(|miss| NamedMiss::of(miss, pinned)).collect(),
         keys,
         cells: cured,
-        too_many: None,
     })))
 }

@@ -2,23 +2,20 @@
 
 use crate::change::{KeyChanges, Side};
 use crate::check_set::CheckSet;
-use crate::company::at;
-use crate::survey::{Miss, Survey};
-use circuit::check::{Check, Finding};
-use circuit::parts::{Transistor, Zener};
-use circuit::pass::{Duty, PassFigures};
-use circuit::rail::Rail;
-use circuit::slot::Slot;
-use select::SearchError;
+use crate::company::Company;
+use crate::limits::Limits;
+use crate::scout::find;
+use crate::survey::Survey;
+use circuit::check::Check;
+use circuit::parts::Zener;
 use select::problem::{Part, Problem};
-use select::ranking::{NO_SPREAD, shortlist};
 use sheet::keys;
 
 /// A remedy that would help.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum Remedy {
-    /// Zeners like those of the catalog with this tolerance or a better one, %: the search was run
-    /// with them and found a candidate.
+    /// Zeners like those of the catalog with this tolerance or a better one, %: with them there is a
+    /// candidate.
     TighterZener {
         /// The widest of the usual tolerances that admits a candidate, %.
         tol_pct: f64,
@@ -59,34 +56,15 @@ const OF_TOLERANCE: CheckSet = CheckSet::of(&[
 ]);
 
 /// The remedies that would help a rail for which nothing qualifies.
-///
-/// # Errors
-/// What the search gives up with.
-pub fn remedies(
-    problem: &Problem<'_>,
-    survey: Option<&Survey>,
-    keys: &[KeyChanges],
-) -> Result<Vec<Remedy>, SearchError> {
+pub fn remedies(problem: &Problem<'_>, survey: &Survey<'_>, keys: &[KeyChanges]) -> Vec<Remedy> {
     let mut found = Vec::new();
-    let misses = survey.map_or(&[][..], |survey| &survey.misses);
-    let misses_only = |checks: CheckSet| misses.iter().any(|miss| miss.failing.is_within(checks));
-    if misses_only(OF_TOLERANCE) {
-        found.extend(tighter_zener(problem)?);
+    if survey.fails_within(OF_TOLERANCE) {
+        found.extend(tighter_zener(problem));
     }
-    if misses_only(CheckSet::of(&[Check::OutputError])) {
+    if survey.fails_within(CheckSet::of(&[Check::OutputError])) {
         found.push(Remedy::TrimmedOutput);
     }
-    let rail = problem.rail;
-    let lacks_gain = misses.iter().any(|miss| {
-        let transistor = at(&miss.places, Slot::Pass).and_then(|t| problem.transistors.get(t));
-        miss.failing.contains(Check::BaseDrive)
-            && miss.failing.is_within(CheckSet::of(&[Check::BaseDrive, Check::AmpJunction]))
-            && transistor.is_some_and(|t| {
-                t.part.figures.junctions == 1
-                    && has_room_for_second_junction(t.part.figures, miss, rail)
-            })
-    });
-    found.extend(lacks_gain.then_some(Remedy::Darlington));
+    found.extend(lacks_gain(problem, survey).then_some(Remedy::Darlington));
     let value = |key: &keys::Key, side: Side| {
         let of_key = keys.iter().find(|k| k.lever.key == key)?;
         of_key.changes.iter().find(|c| c.side == side).map(|c| c.value)
@@ -97,23 +75,22 @@ pub fn remedies(
     found.extend(lower.map(|at_most_v| Remedy::LowerFeed { at_most_v }));
     let higher = value(&keys::FEED_MIN_V, Side::Above);
     found.extend(higher.map(|at_least_v| Remedy::HigherValley { at_least_v }));
-    Ok(found)
+    found
 }
 
-/// A darlington's second base-emitter voltage, taken to be as large as the first, leaves the headroom
-/// checks of this combination holding. Its saturation voltage is higher by as much.
-fn has_room_for_second_junction(transistor: &Transistor, miss: &Miss, rail: &Rail) -> bool {
-    let second_v = PassFigures::new(transistor, &Duty::new(rail), rail).vbe_hi_v;
-    let headroom = [Check::SwingHigh, Check::Dropout];
-    miss.findings
-        .iter()
-        .filter(|finding| headroom.contains(&finding.check))
-        .all(|finding| Finding { asked: finding.asked + second_v, ..*finding }.holds())
+/// Only the base current of a single transistor is too much for the amplifier, or heats it too much, and
+/// everything else would hold with a second base-emitter voltage.
+fn lacks_gain(problem: &Problem<'_>, survey: &Survey<'_>) -> bool {
+    let of_gain = CheckSet::of(&[Check::BaseDrive, Check::AmpJunction]);
+    survey.fails_within(of_gain) && {
+        let others = Limits::asking(CheckSet::ALL.without(of_gain));
+        find(&Company::with_second_junction(problem), &others).is_some()
+    }
 }
 
 /// The widest usual tolerance with which some zener, else as it is, would be in a candidate.
-fn tighter_zener(problem: &Problem<'_>) -> Result<Option<Remedy>, SearchError> {
-    for tol_pct in USUAL_TOLERANCES_PCT {
+fn tighter_zener(problem: &Problem<'_>) -> Option<Remedy> {
+    let admits = |tol_pct: &f64| {
         let tighter: Vec<Zener> = problem
             .zeners
             .iter()
@@ -122,9 +99,8 @@ fn tighter_zener(problem: &Problem<'_>) -> Result<Option<Remedy>, SearchError> {
         let zeners = problem.zeners.iter().zip(&tighter);
         let zeners = zeners.map(|(z, figures)| Part { figures, ..*z }).collect();
         let with_them = Problem { zeners, ..problem.clone() };
-        if !shortlist(&with_them, 1, &NO_SPREAD)?.is_empty() {
-            return Ok(Some(Remedy::TighterZener { tol_pct }));
-        }
-    }
-    Ok(None)
+        find(&Company::new(&with_them), &Limits::ALL).is_some()
+    };
+    let tol_pct = USUAL_TOLERANCES_PCT.into_iter().find(admits)?;
+    Some(Remedy::TighterZener { tol_pct })
 }

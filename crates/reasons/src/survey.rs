@@ -1,29 +1,21 @@
-//! The least that fails of any combination: the sets of failing checks of which none holds another.
-//!
-//! Where nothing qualifies these sets say everything: a set of checks can be asked in vain exactly
-//! where it meets each of them. There are few of them, and each is kept with a combination that shows
-//! it; of several one is taken that fails by little.
-//!
-//! A combination is a reference side, an amplifier and a power side. For each amplifier the least that
-//! fails on either side is kept, and the two are joined. A reference side is passed over where the best
-//! that any amplifier could make of it is no news; every check is monotone in each figure of an
-//! amplifier (model page, section 6).
+//! What fails of the combinations of a problem, asked in questions: does any combination keep these
+//! checks, which one fails in fewest, by how little.
 
-use crate::antichain::Antichain;
 use crate::check_set::{CheckSet, Failing};
-use crate::company::{Biased, Company, Places, best_at_input};
-use circuit::check::Finding;
-use circuit::pass::PassFigures;
-use circuit::slot::Slot;
-use rayon::prelude::*;
+use crate::company::{Company, Places};
+use crate::limits::Limits;
+use crate::scout::{OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, find};
+use circuit::check::{Check, Finding, Tally};
 use select::problem::Problem;
+use std::collections::HashMap;
+use std::sync::Mutex;
 
-/// A combination with a smallest set of checks that fail.
+/// A combination with the checks that fail.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Miss {
     /// The checks that fail; none for a candidate.
     pub failing: CheckSet,
-    /// The greatest utilisation among them.
+    /// The greatest utilisation among them; 0 where none fails.
     pub worst: f64,
     /// Its parts.
     pub places: Places,
@@ -38,237 +30,175 @@ impl Miss {
     }
 }
 
-/// The least that fails of any combination of a problem.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Survey {
-    /// By number of failing checks, then by how far they fail. Empty where no transistor can be
-    /// mounted or a slot holds no part.
-    pub misses: Vec<Miss>,
+/// The combinations of a problem, and what has been asked of them.
+pub struct Survey<'a> {
+    company: Company<'a>,
+    /// For each set of checks that was asked a combination that keeps them, or none.
+    answers: Mutex<HashMap<CheckSet, Option<Places>>>,
 }
 
-impl Survey {
+/// A combination is brought nearer so often at most.
+const MOST_STEPS: usize = 14;
+
+/// A combination is near enough where nothing is nearer by more than this share of its utilisation.
+const NEAR: f64 = 1e-3;
+
+/// Sets of failing checks with more members than this are not looked for.
+const MOST_FAILING: usize = 4;
+
+impl<'a> Survey<'a> {
+    /// Of a problem.
+    pub fn new(problem: &'a Problem<'a>) -> Self {
+        Self { company: Company::new(problem), answers: Mutex::default() }
+    }
+
+    pub(crate) fn company(&self) -> &Company<'a> {
+        &self.company
+    }
+
+    /// A combination for which these checks hold, whatever others find; None where there is none.
+    pub fn holding(&self, asked: CheckSet) -> Option<Miss> {
+        self.miss(&self.places_holding(asked)?)
+    }
+
     /// Some combination fails in these checks at most.
     pub fn fails_within(&self, checks: CheckSet) -> bool {
-        self.misses.iter().any(|miss| miss.failing.is_within(checks))
+        self.places_holding(CheckSet::ALL.without(checks)).is_some()
     }
-}
 
-/// There are too many combinations to look through.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub struct TooMany {
-    /// Reference sides: zener, bias line, divider line and pot.
-    pub references: u64,
-    /// Amplifiers that may stand beside them.
-    pub amplifiers: usize,
-}
-
-/// At most so many reference sides are looked at.
-pub const MOST_REFERENCES: u64 = 2_000_000;
-
-/// At most so many meetings of a reference side and an amplifier are worked out.
-pub const MOST_MEETINGS: u64 = 40_000_000;
-
-/// So many reference sides are looked at before it is seen which amplifiers are done.
-const BATCH: usize = 256;
-
-type PowerPlace = (u32, Option<u32>);
-type ReferencePlace = (u32, u32, u32, Option<u32>);
-
-/// An amplifier with the least that fails on either side of it.
-struct Middle {
-    supply: Failing,
-    power: Antichain<PowerPlace>,
-    reference: Antichain<ReferencePlace>,
-}
-
-/// Finds the least that fails.
-///
-/// # Errors
-/// [`TooMany`] beyond [`MOST_REFERENCES`] or [`MOST_MEETINGS`].
-pub fn survey(problem: &Problem<'_>) -> Result<Survey, TooMany> {
-    let company = Company::new(problem);
-    let too_many =
-        TooMany { references: company.references(), amplifiers: company.amplifiers.len() };
-    if too_many.references > MOST_REFERENCES {
-        return Err(too_many);
+    fn places_holding(&self, asked: CheckSet) -> Option<Places> {
+        let lock = || self.answers.lock().unwrap_or_else(std::sync::PoisonError::into_inner);
+        let known = lock().get(&asked).copied();
+        known.unwrap_or_else(|| {
+            let found = find(&self.company, &Limits::asking(asked));
+            lock().insert(asked, found);
+            found
+        })
     }
-    let mut middles = middles(&company);
-    meet_references(&company, &mut middles).ok_or(too_many)?;
 
-    let mut least: Antichain<Places> = Antichain::new();
-    for (amplifier, middle) in (0u32..).zip(&middles) {
-        for (reference, place) in middle.reference.iter() {
-            for (power, (pass, sink)) in middle.power.iter() {
-                let (zener, bias_line, divider_line, pot) = *place;
-                let mut places = [None; Slot::COUNT];
-                places[Slot::Zener as usize] = Some(zener);
-                places[Slot::BiasLine as usize] = Some(bias_line);
-                places[Slot::Amplifier as usize] = Some(amplifier);
-                places[Slot::DividerLine as usize] = Some(divider_line);
-                places[Slot::Pot as usize] = pot;
-                places[Slot::Pass as usize] = Some(*pass);
-                places[Slot::Heatsink as usize] = *sink;
-                least.insert(middle.supply.and(*reference).and(*power), places);
+    fn miss(&self, places: &Places) -> Option<Miss> {
+        let findings = self.company.findings(places)?;
+        let mut failing = Failing::default();
+        for finding in &findings {
+            // It never ends the asking.
+            let _ = failing.take(*finding);
+        }
+        Some(Miss { failing: failing.set, worst: failing.worst, places: *places, findings })
+    }
+
+    /// Of the combinations that fail in these checks at most, one of which no check less fails, and that
+    /// fails by as little as others with these checks, to a thousandth; None where there is none.
+    pub fn nearest_within(&self, checks: CheckSet) -> Option<Miss> {
+        let mut nearest = self.holding(CheckSet::ALL.without(checks))?;
+        for check in Check::ALL {
+            if nearest.failing.contains(check) {
+                let fewer = nearest.failing.without(CheckSet::of(&[check]));
+                nearest = self.holding(CheckSet::ALL.without(fewer)).unwrap_or(nearest);
             }
         }
+        Some(self.drawn_nearer(nearest))
     }
-    let mut misses: Vec<Miss> = least
-        .into_vec()
-        .into_iter()
-        .filter_map(|(Failing { set, worst }, places)| {
-            let findings = company.findings(&places)?;
-            Some(Miss { failing: set, worst, places, findings })
-        })
-        .collect();
-    misses.sort_by(|a, b| {
-        (a.failing.len().cmp(&b.failing.len()))
-            .then_with(|| a.worst.total_cmp(&b.worst))
-            .then_with(|| a.failing.cmp(&b.failing))
-    });
-    Ok(Survey { misses })
-}
 
-/// A transistor with the least that fails of its mountings.
-struct Mounted<'c> {
-    place: u32,
-    pass: &'c PassFigures,
-    mountings: Antichain<Option<u32>>,
-}
-
-impl Mounted<'_> {
-    /// Whatever amplifier drives them, nothing fails here that does not fail there: each figure that an
-    /// amplifier meets is at least as good, and so is some mounting.
-    fn is_as_good_as(&self, other: &Self) -> bool {
-        let (mine, theirs) = (self.pass, other.pass);
-        let past_amplifier = |p: &PassFigures| if p.junctions == 2 { p.ileak_a } else { None };
-        let leaks_no_more = match (mine.ileak_a, theirs.ileak_a) {
-            (None, _) => true,
-            (Some(_), None) => false,
-            (Some(a), Some(b)) => a <= b && past_amplifier(mine) <= past_amplifier(theirs),
-        };
-        leaks_no_more
-            && mine.base.most_a <= theirs.base.most_a
-            && mine.vbe_hi_v <= theirs.vbe_hi_v
-            && mine.drive_power_w <= theirs.drive_power_w
-            && other.mountings.iter().all(|(failing, _)| self.mountings.covers(failing))
-    }
-}
-
-/// The transistors that can be mounted, without those to which another is as good: they bring no news.
-fn best_mounted<'c>(company: &'c Company<'_>) -> Vec<Mounted<'c>> {
-    let all: Vec<Mounted<'_>> = company
-        .passes
-        .par_iter()
-        .enumerate()
-        .map(|(t, pass)| {
-            let mut mountings = Antichain::new();
-            for (sink, mounted) in company.mountings(t) {
-                mountings.insert(company.mounted_failing(pass, &mounted), sink);
+    /// The combination that fails in the same checks, or fewer, by least.
+    fn drawn_nearer(&self, mut nearest: Miss) -> Miss {
+        let checks = nearest.failing;
+        let mut too_little = 1.0;
+        for _ in 0..MOST_STEPS {
+            if nearest.worst <= too_little * (1.0 + NEAR) {
+                break;
             }
-            Mounted { place: u32::try_from(t).unwrap_or(u32::MAX), pass, mountings }
-        })
-        .collect();
-    let mut best: Vec<Mounted<'_>> = Vec::new();
-    for mounted in all {
-        if mounted.mountings.iter().next().is_none()
-            || best.iter().any(|known| known.is_as_good_as(&mounted))
-        {
-            continue;
-        }
-        best.retain(|known| !mounted.is_as_good_as(known));
-        best.push(mounted);
-    }
-    best
-}
-
-/// Every amplifier with the least that fails between it and any mounted transistor.
-fn middles(company: &Company<'_>) -> Vec<Middle> {
-    let mounted = best_mounted(company);
-    company
-        .amplifiers
-        .par_iter()
-        .map(|amp| {
-            let mut power = Antichain::new();
-            for Mounted { place, pass, mountings } in &mounted {
-                if power.is_clear() {
-                    break;
-                }
-                let driven = company.drive_failing(amp, pass);
-                for (failing, sink) in mountings.iter() {
-                    power.insert(failing.and(driven), (*place, *sink));
-                }
-            }
-            Middle { supply: company.supply_failing(amp), power, reference: Antichain::new() }
-        })
-        .collect()
-}
-
-/// Puts the least that fails between each amplifier and any reference side where it belongs. None
-/// where that takes too many meetings.
-fn meet_references(company: &Company<'_>, middles: &mut [Middle]) -> Option<()> {
-    let Some(best) = best_at_input(&company.amplifiers) else { return Some(()) };
-    let mut biased = company.biased();
-    // Those of which least fails first: they leave least to look for behind them.
-    biased.sort_by(|a, b| {
-        let by = |x: &Biased| (x.failing.set.len(), x.zener, x.line);
-        by(a).cmp(&by(b))
-    });
-    let dividers: Vec<(u32, Option<u32>)> = company.dividers().collect();
-    let mut open: Vec<usize> = (0..middles.len()).collect();
-    let mut meetings = 0u64;
-    let mut looked_at = 0usize;
-    for biased in &biased {
-        for &(line, pot) in &dividers {
-            if looked_at.is_multiple_of(BATCH) {
-                open = still_open(middles, &open);
-            }
-            looked_at += 1;
-            open.retain(|&a| middles.get(a).is_some_and(|m| !m.reference.is_clear()));
-            let news = |failing: Failing, open: &[usize], middles: &[Middle]| {
-                open.iter().any(|&a| !middles.get(a).is_some_and(|m| m.reference.covers(&failing)))
+            // Where nothing is allowed at all a utilisation is infinite.
+            let most = if nearest.worst.is_finite() {
+                (too_little * nearest.worst).sqrt()
+            } else {
+                1e3 * too_little
             };
-            // Nothing that meets this zener can fail in less than it does itself.
-            if !news(biased.failing, &open, middles) {
-                continue;
-            }
-            let Some(reference) = company.reference(biased, line, pot) else { continue };
-            let at_best = biased.failing.and(company.input_failing(&reference, &best));
-            for &a in &open {
-                let (Some(middle), Some(amp)) = (middles.get_mut(a), company.amplifiers.get(a))
-                else {
-                    continue;
-                };
-                if middle.reference.covers(&at_best) {
-                    continue;
-                }
-                meetings += 1;
-                let failing = biased.failing.and(company.input_failing(&reference, amp));
-                middle.reference.insert(failing, (biased.zener, biased.line, line, pot));
-            }
-            if meetings > MOST_MEETINGS {
-                return None;
+            let found = find(&self.company, &Limits::straining(checks, most));
+            match found.and_then(|places| self.miss(&places)) {
+                Some(nearer) => nearest = nearer,
+                None => too_little = most,
             }
         }
+        nearest
     }
-    Some(())
+
+    /// Combinations that fail in the fewest checks, each in other checks, by as little as they can: at
+    /// most so many. Where more than [`MOST_FAILING`] checks fail of each, one that fails in no more
+    /// checks than it must. None where nothing can be built or a candidate exists.
+    pub fn nearest(&self, most: usize) -> Vec<Miss> {
+        if self.places_holding(CheckSet::EMPTY).is_none() || self.fails_within(CheckSet::EMPTY) {
+            return Vec::new();
+        }
+        // Sets of checks of which no combination keeps all: something fails in each of them.
+        let mut vain = vec![self.least_in_vain(CheckSet::ALL)];
+        for size in 1..=MOST_FAILING {
+            let mut nearest = Vec::new();
+            let mut tried: Vec<CheckSet> = Vec::new();
+            while nearest.len() < most
+                && let Some(checks) = next_meeting(&vain, size, &tried)
+            {
+                tried.push(checks);
+                let asked = CheckSet::ALL.without(checks);
+                match self.holding(asked) {
+                    Some(miss) => nearest.push(self.drawn_nearer(miss)),
+                    None => vain.push(self.least_in_vain(asked)),
+                }
+            }
+            if !nearest.is_empty() {
+                nearest.sort_by(|a, b| a.worst.total_cmp(&b.worst));
+                return nearest;
+            }
+        }
+        self.nearest_within(CheckSet::ALL).into_iter().collect()
+    }
+
+    /// The least of a set of checks of which no combination keeps all that is still kept by none.
+    fn least_in_vain(&self, mut asked: CheckSet) -> CheckSet {
+        let sides = [OF_POWER, OF_REFERENCE, OF_MEETING, OF_SUPPLY, OF_DRIVE];
+        let each = Check::ALL.map(|check| CheckSet::of(&[check]));
+        for part in sides.into_iter().chain(each) {
+            if asked.meets(part) && self.places_holding(asked.without(part)).is_none() {
+                asked = asked.without(part);
+            }
+        }
+        asked
+    }
 }
 
-/// The amplifiers of which a reference side could still bring news: what fails between them and every
-/// transistor is not yet covered by what is known of all.
-fn still_open(middles: &[Middle], open: &[usize]) -> Vec<usize> {
-    let mut known: Antichain<()> = Antichain::new();
-    for middle in middles {
-        for (reference, _) in middle.reference.iter() {
-            for (power, _) in middle.power.iter() {
-                known.insert(middle.supply.and(*reference).and(*power), ());
-            }
+/// The first set of so many checks, in page order, that meets all of these sets and was not tried.
+fn next_meeting(vain: &[CheckSet], size: usize, tried: &[CheckSet]) -> Option<CheckSet> {
+    fn extend(
+        vain: &[CheckSet],
+        chosen: CheckSet,
+        left: usize,
+        accept: &impl Fn(CheckSet) -> bool,
+    ) -> Option<CheckSet> {
+        match vain.iter().find(|set| !set.meets(chosen)) {
+            // A set that is not met decides which checks may come next.
+            Some(_) if left == 0 => None,
+            Some(open) => open.iter().find_map(|check| {
+                extend(vain, chosen.and(CheckSet::of(&[check])), left - 1, accept)
+            }),
+            None => (left == 0 && accept(chosen)).then_some(chosen),
         }
     }
-    let brings_news = |a: &usize| {
-        middles.get(*a).is_some_and(|middle| {
-            !middle.reference.is_clear()
-                && middle.power.iter().any(|(power, _)| !known.covers(&middle.supply.and(*power)))
-        })
-    };
-    open.iter().copied().filter(brings_news).collect()
+    extend(vain, CheckSet::EMPTY, size, &|set| !tried.contains(&set))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn sets_that_meet_all_come_one_after_another() {
+        use Check::{BaseDrive, Dropout, NoLoad, SwingHigh};
+        let of = CheckSet::of;
+        let vain = [of(&[Dropout, SwingHigh]), of(&[SwingHigh, NoLoad]), of(&[BaseDrive])];
+        let mut tried = Vec::new();
+        while let Some(set) = next_meeting(&vain, 2, &tried) {
+            tried.push(set);
+        }
+        assert_eq!(tried, [of(&[SwingHigh, BaseDrive])]);
+        assert_eq!(next_meeting(&vain, 1, &[]), None);
+    }
 }

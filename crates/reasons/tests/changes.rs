@@ -6,7 +6,7 @@ use reasons::change::{JUST_SHORT, Side, Threshold, changes};
 use reasons::check_set::CheckSet;
 use reasons::lever::{self, Follows, Lever};
 use reasons::probe::Market;
-use reasons::survey::survey;
+use reasons::survey::Survey;
 use select::problem::Problem;
 use std::collections::BTreeSet;
 use twin::plain::{Plain, each_combination};
@@ -39,9 +39,10 @@ fn exact_changes_admit_and_slightly_less_does_not_and_brackets_hold() {
             continue;
         }
         let levers: Vec<&'static Lever> = lever::on_rail(rail, false).collect();
-        let survey = survey(&shop.0.problem()).expect("small shops are not too many");
+        let problem = shop.0.problem();
+        let survey = Survey::new(&problem);
         let follows = Follows::default();
-        let found = changes(&shop, rail, follows, &levers, Some(&survey)).expect("small searches");
+        let found = changes(&shop, follows, &levers, &survey).expect("small searches");
         for key in found {
             let name = key.lever.name();
             untried += usize::from(!key.was_tried);

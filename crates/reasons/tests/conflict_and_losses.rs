@@ -1,14 +1,14 @@
 //! Survey, conflict and losses against the plain way: every combination, every check.
 
-use circuit::check::Check;
+use circuit::check::{Check, Finding};
 use circuit::slot::Slot;
 use reasons::check_set::CheckSet;
 use reasons::conflict::{Conflict, asked};
 use reasons::losses::{concerns, losses};
 use reasons::requirement::Requirement;
-use reasons::survey::survey;
+use reasons::survey::Survey;
 use select::problem::Problem;
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 use twin::plain::each_combination;
 use twin::shops::RandomShop;
 
@@ -26,25 +26,85 @@ fn all_failing(problem: &Problem<'_>) -> BTreeSet<CheckSet> {
     all
 }
 
+/// Which checks are asked, now few and now many of them, by a number that looks random.
+fn some_checks(seed: u64, n: u64) -> CheckSet {
+    let mut state =
+        seed.wrapping_mul(0x9e37_79b9_7f4a_7c15) ^ n.wrapping_mul(0xd1b5_4a32_d192_ed03);
+    let mut next = || {
+        state = state.wrapping_mul(0x5851_f42d_4c95_7f2d).wrapping_add(0x1405_7b7e_f767_814f);
+        state >> 33
+    };
+    let share = next() % 9;
+    Check::ALL.into_iter().filter(|_| next() % 8 < share).collect()
+}
+
 #[test]
-fn a_survey_is_the_least_that_fails_of_any_combination() {
+fn a_survey_finds_a_combination_that_keeps_checks_exactly_where_there_is_one() {
+    let (mut kept, mut in_vain) = (0, 0);
     for seed in 0..SEEDS {
         let shop = RandomShop::from_seed(seed);
         let problem = shop.problem();
         let all = all_failing(&problem);
-        let least: BTreeSet<CheckSet> = all
-            .iter()
-            .filter(|set| !all.iter().any(|other| other != *set && other.is_within(**set)))
-            .copied()
-            .collect();
-        let survey = survey(&problem).expect("small shops are not too many");
-        let found: BTreeSet<CheckSet> = survey.misses.iter().map(|miss| miss.failing).collect();
-        assert_eq!(found, least, "seed {seed}");
-        for miss in &survey.misses {
-            let failing: CheckSet = miss.failures().map(|f| f.check).collect();
-            assert_eq!(failing, miss.failing, "seed {seed}: the combination shows its set");
+        let survey = Survey::new(&problem);
+        let each = Check::ALL.map(|check| CheckSet::of(&[check]));
+        let but_one = each.map(|one| CheckSet::ALL.without(one));
+        let random = (0..12).map(|n| some_checks(seed, n));
+        let asked = [CheckSet::EMPTY, CheckSet::ALL].into_iter().chain(each).chain(but_one);
+        for asked in asked.chain(random) {
+            let exists = all.iter().any(|failing| !failing.meets(asked));
+            let found = survey.holding(asked);
+            assert_eq!(found.is_some(), exists, "seed {seed}: {:?}", Vec::from_iter(asked.iter()));
+            if let Some(miss) = found {
+                let failing: CheckSet = miss.failures().map(|f| f.check).collect();
+                assert_eq!(failing, miss.failing, "seed {seed}: the combination shows its set");
+                assert!(!failing.meets(asked), "seed {seed}: what is asked holds");
+                assert!(all.contains(&failing), "seed {seed}: there is such a combination");
+            }
+            kept += usize::from(exists);
+            in_vain += usize::from(!exists);
         }
     }
+    assert!(kept > 10_000 && in_vain > 10_000, "{kept} {in_vain}");
+}
+
+#[test]
+fn the_nearest_combinations_fail_in_fewest_checks_and_by_least() {
+    let (mut nearest_seen, mut of_several) = (0, 0);
+    for seed in 0..SEEDS {
+        let shop = RandomShop::from_seed(seed);
+        let problem = shop.problem();
+        // For each set of failing checks the least of what fails worst.
+        let mut all: BTreeMap<CheckSet, f64> = BTreeMap::new();
+        each_combination(&problem, |combination| {
+            let Some(fitted) = &combination.fitted else { return };
+            let failing = fitted.findings.iter().filter(|f| !f.holds());
+            let worst = failing.clone().map(Finding::utilisation).fold(0.0, f64::max);
+            let least = all.entry(failing.map(|f| f.check).collect()).or_insert(f64::INFINITY);
+            *least = least.min(worst);
+        });
+        let told = Survey::new(&problem).nearest(usize::MAX);
+        if all.is_empty() || all.contains_key(&CheckSet::EMPTY) {
+            assert!(told.is_empty(), "seed {seed}");
+            continue;
+        }
+        let fewest = all.keys().map(|set| set.len()).min().unwrap_or(0);
+        if fewest > 4 {
+            assert_eq!(told.len(), 1, "seed {seed}: one is told all the same");
+            continue;
+        }
+        let sets: BTreeSet<CheckSet> = told.iter().map(|miss| miss.failing).collect();
+        let with_fewest = all.iter().filter(|(set, _)| set.len() == fewest);
+        let expected: BTreeSet<CheckSet> = with_fewest.map(|(set, _)| *set).collect();
+        assert_eq!(sets, expected, "seed {seed}");
+        for miss in &told {
+            let least = all[&miss.failing];
+            let near = miss.worst <= least * 1.002 || least.is_infinite();
+            assert!(near, "seed {seed}: {} {least}", miss.worst);
+        }
+        nearest_seen += told.len();
+        of_several += usize::from(fewest > 1);
+    }
+    assert!(nearest_seen > 500 && of_several > 50, "{nearest_seen} {of_several}");
 }
 
 #[test]
@@ -59,7 +119,7 @@ fn a_conflict_leaves_no_candidate_and_is_minimal_and_none_is_smaller() {
             let asked = asked(requirements, rail);
             all.iter().any(|failing| !failing.meets(asked))
         };
-        let survey = survey(&problem).expect("small shops are not too many");
+        let survey = Survey::new(&problem);
         let Some(conflict) = Conflict::smallest(&survey, rail) else {
             assert!(all.contains(&CheckSet::EMPTY), "seed {seed}: a candidate");
             continue;
@@ -109,7 +169,7 @@ fn losses_are_what_one_check_rules_out_in_every_company() {
         if held.iter().flatten().all(Option::is_none) {
             continue;
         }
-        for row in losses(&problem).expect("small shops are not too many") {
+        for row in losses(&problem) {
             let of_slot = &held[row.slot as usize];
             for check in Check::ALL.into_iter().filter(|&check| concerns(row.slot, check)) {
                 let is_lost = |held: &&Option<CheckSet>| held.is_some_and(|h| !h.contains(check));

@@ -8,14 +8,12 @@ use reasons::losses::SlotLosses;
 use reasons::nothing::Nothing;
 use reasons::remedy::Remedy;
 use reasons::requirement::Requirement;
+use reasons::survey::Miss;
 use select::problem::Problem;
 use sheet::Sheet;
 
 /// Columns by which the text below a heading is indented.
 const INDENT: usize = words::INDENT;
-
-/// At most so many combinations that fail in least are told beside the conflict.
-const MOST_MISSES: usize = 3;
 
 /// Why nothing qualifies for a sheet: losses, conflict, single changes, remedies.
 pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &Look) -> String {
@@ -34,18 +32,11 @@ pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &L
     };
     section(
         "Parts that one check alone rules out",
-        match &reasons.losses {
-            Ok(losses) => losses.iter().map(|row| slot(row, look)).collect(),
-            Err(too_many) => words::too_many(too_many, look),
-        },
+        reasons.losses.iter().map(|row| slot(row, look)).collect(),
     );
     section(
         "A smallest conflict",
-        match (&reasons.conflict, &reasons.survey) {
-            (Some(found), _) => conflict(found, problem, look),
-            (None, Err(too_many)) => words::too_many(too_many, look),
-            (None, Ok(_)) => String::new(),
-        },
+        reasons.conflict.iter().map(|found| conflict(found, problem, look)).collect(),
     );
     section("Nearest combinations", misses(reasons, problem, look));
     let currency = Currency(sheet.currency.as_deref());
@@ -64,7 +55,7 @@ pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &L
 
 /// The slots that have no part, by name.
 fn empty_slots(reasons: &Nothing) -> String {
-    let rows = reasons.losses.iter().flatten();
+    let rows = reasons.losses.iter();
     let empty: Vec<&str> = rows.filter(|row| row.parts == 0).map(|row| row.slot.name()).collect();
     if empty.is_empty() { "some slot".to_owned() } else { empty.join(", ") }
 }
@@ -140,23 +131,16 @@ fn conflict(conflict: &Conflict, problem: &Problem<'_>, look: &Look) -> String {
 
 /// Combinations that fail in fewest checks, but for those that the conflict has told.
 fn misses(reasons: &Nothing, problem: &Problem<'_>, look: &Look) -> String {
-    let Ok(survey) = &reasons.survey else { return String::new() };
-    let told = |places| {
+    let told = |miss: &&Miss| {
         let members = reasons.conflict.iter().flat_map(|conflict| &conflict.members);
-        members.map(|member| member.without_it.places).any(|p| p == places)
+        members.map(|member| member.without_it.failing).any(|failing| failing == miss.failing)
     };
-    let fewest = survey.misses.first().map_or(0, |miss| miss.failing.len());
-    survey
-        .misses
-        .iter()
-        .filter(|miss| miss.failing.len() == fewest && !told(miss.places))
-        .take(MOST_MISSES)
-        .map(|miss| {
-            let failures: Vec<String> = miss.failures().map(words::failed).collect();
-            let parts = words::parts_of_miss(miss, problem);
-            look.paragraph(&format!("{parts} fails {}", failures.join("; ")), INDENT, 2 * INDENT)
-        })
-        .collect()
+    let tell = |miss: &Miss| {
+        let parts = words::parts_of_miss(miss, problem);
+        let told = format!("{parts}, which fails {}.", words::failures(miss.failures()));
+        look.paragraph(&told, INDENT, 2 * INDENT)
+    };
+    reasons.nearest.iter().filter(|miss| !told(miss)).map(tell).collect()
 }
 
 fn remedies(remedies: &[Remedy], look: &Look) -> String {

@@ -134,9 +134,6 @@ fn told_infeasible(
     currency: &Currency<'_>,
     look: &Look,
 ) -> String {
-    if let Some(too_many) = &infeasible.too_many {
-        return words::too_many(too_many, look);
-    }
     let chooses_sink = sheet.rail.chooses_heatsink();
     let mut text = String::new();
     let mut line = |told: &str| text += &look.paragraph(told, 2 * INDENT, 3 * INDENT);

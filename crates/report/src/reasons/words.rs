@@ -9,7 +9,7 @@ use quantity::notation::{Unit, engineering, resistance};
 use reasons::change::{Change, KeyChanges, MOST_PROBES, Side, Threshold};
 use reasons::lever::Lever;
 use reasons::probe::{Admitted, Name, name_at};
-use reasons::survey::{Miss, TooMany};
+use reasons::survey::Miss;
 use select::problem::Problem;
 
 /// Columns by which the text below a heading is indented.
@@ -202,19 +202,4 @@ pub(super) fn how_changes_are_found(look: &Look) -> String {
 /// The names of keys.
 fn names<'k>(levers: impl Iterator<Item = &'k Lever>) -> String {
     levers.map(Lever::name).collect::<Vec<_>>().join(", ")
-}
-
-/// Why there is no survey.
-pub(super) fn too_many(too_many: &TooMany, look: &Look) -> String {
-    let grouped = |n: u64| crate::look::grouped(&n.to_string());
-    look.paragraph(
-        &format!(
-            "Too many combinations to look through one by one: {} references of zener, resistor lines \
-             and pot, beside {} amplifiers.",
-            grouped(too_many.references),
-            grouped(too_many.amplifiers as u64)
-        ),
-        2,
-        4,
-    )
 }
