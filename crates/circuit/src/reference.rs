@@ -324,8 +324,13 @@ pub fn bias_distance(zener: &ZenerAtRail, rz_ohm: f64, target_a: f64, rail: &Rai
 /// Where no value holds: the one whose greatest utilisation of the five checks is least, on a tie
 /// the larger. None for a line without values.
 pub fn least_bad_rz(zener: &ZenerAtRail, line: &LineAtRail, rail: &Rail) -> Option<Bias> {
+    // V0hi never falls with the zener's own heat. Where the lowest feed does not exceed the cold one no
+    // value lets current through, every utilisation of `zener-bias` is infinite, and all tie.
+    let all_tie =
+        rail.feed.min_v <= zener.test_voltage(0.0, rail).hi_v && zener.zener.iz_min_a > 0.0;
+    let first = if all_tie { line.values.len().saturating_sub(1) } else { 0 };
     let mut best: Option<(f64, Bias)> = None;
-    for value in &line.values {
+    for value in &line.values[first..] {
         let bias = zener.bias(*value, rail);
         let worst = Worst::of(|t| zener.checks(&bias, line, t));
         let better = best.is_none_or(|(least, _)| compare(worst, least) != Ordering::Greater);

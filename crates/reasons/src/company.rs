@@ -12,7 +12,7 @@ use circuit::drive;
 use circuit::parts::{Amplifier, Heatsink, Zener};
 use circuit::pass::{CaseTemperatures, Duty, Mounted, PassFigures, Unmounted};
 use circuit::rail::Rail;
-use circuit::reference::{Bias, Chosen, ZenerAtRail, chosen_rz};
+use circuit::reference::{Bias, Chosen, ZenerAtRail, choose_rz, chosen_rz};
 use circuit::resistor::{LineAtRail, PotAtRail};
 use circuit::slot::Slot;
 use rayon::prelude::*;
@@ -157,24 +157,35 @@ impl<'a> Company<'a> {
         self.problem.rail
     }
 
-    /// Every zener on every bias line, in the order of the lists.
-    pub fn biased(&self) -> Vec<Biased> {
-        let rail = self.rail();
+    /// Every zener on every bias line of which a value holds, in the order of the lists.
+    pub fn biased_well(&self) -> Vec<Biased> {
         let on_line = |(zener, z): (u32, &ZenerAtRail)| -> Vec<Biased> {
             let lines = (0u32..).zip(&self.bias_lines);
             lines
                 .filter_map(|(line, l)| {
-                    let bias = match chosen_rz(z, l, rail)? {
-                        Chosen::Holds(bias, _) | Chosen::Fails(bias, _) => bias,
-                    };
-                    let failing = Failing::among(|t| z.checks(&bias, l, t));
-                    Some(Biased { zener, line, bias, failing })
+                    let (bias, _) = choose_rz(z, l, self.rail())?;
+                    Some(Biased { zener, line, bias, failing: Failing::default() })
                 })
                 .collect()
         };
         let zeners: Vec<(u32, &ZenerAtRail)> = (0u32..).zip(self.zeners()).collect();
         let by_zener: Vec<Vec<Biased>> = zeners.into_par_iter().map(on_line).collect();
         by_zener.into_iter().flatten().collect()
+    }
+
+    /// A zener on each bias line of which no value holds, with the value that fails least. These are
+    /// dear to work out: every value is tried.
+    pub fn biased_badly(&self, zener: u32) -> Vec<Biased> {
+        let Some(z) = self.zeners().get(zener as usize) else { return Vec::new() };
+        let lines = (0u32..).zip(&self.bias_lines);
+        let failing = |(line, l): (u32, &LineAtRail)| match chosen_rz(z, l, self.rail())? {
+            Chosen::Holds(..) => None,
+            Chosen::Fails(bias, _) => {
+                let failing = Failing::among(|t| z.checks(&bias, l, t));
+                Some(Biased { zener, line, bias, failing })
+            }
+        };
+        lines.filter_map(failing).collect()
     }
 
     /// The divider lines with the pots that may stand beside them.

@@ -14,6 +14,7 @@ use circuit::pass::PassFigures;
 use circuit::slot::Slot;
 use rayon::prelude::*;
 use select::problem::Problem;
+use std::sync::OnceLock;
 
 /// What the parts of a slot are lost to.
 #[derive(Debug, Clone, PartialEq, Eq)]
@@ -85,72 +86,65 @@ impl OpenChecks {
 
     /// The reference side, and amplifiers beside it.
     fn meet_references(&mut self, company: &Company<'_>) {
-        let biased = company.biased();
-        for biased in &biased {
-            let held = OF_REFERENCE.without(biased.failing.set);
-            close(&mut self.zeners, biased.zener as usize, held);
-            close(&mut self.bias_lines, biased.line as usize, held);
+        let references = References::new(company);
+        for biased in &references.well {
+            close(&mut self.bias_lines, biased.line as usize, OF_REFERENCE);
+        }
+        if self.bias_lines.iter().any(|open| open.is_some_and(|checks| !checks.is_empty())) {
+            for biased in references.badly() {
+                let held = OF_REFERENCE.without(biased.failing.set);
+                close(&mut self.bias_lines, biased.line as usize, held);
+            }
         }
         for (open, amp) in self.amplifiers.iter_mut().zip(company.amplifiers()) {
             let held = OF_SUPPLY.without(company.supply_failing(amp).set);
             *open = open.map(|checks| checks.without(held));
         }
-        self.meet_zeners(company, &biased);
-        self.meet_dividers(company, &biased);
-        self.meet_amplifiers(company, &biased);
+        let meetings = Meetings::of_all_amplifiers(company);
+        self.meet_zeners(company, &references, &meetings);
+        self.meet_dividers(&references, &meetings);
+        self.meet_amplifiers(company, &references);
     }
 
     /// Each zener beside the amplifiers.
-    fn meet_zeners(&mut self, company: &Company<'_>, biased: &[Biased]) {
-        let meetings = Meetings::of_all_amplifiers(company);
-        let Some(first) = meetings.first() else { return };
-        let by_zener: Vec<&[Biased]> = biased.chunk_by(|a, b| a.zener == b.zener).collect();
-        let still_open = |of_zener: &&[Biased]| {
-            // Most checks hold beside the first divider already.
-            let mut open = OF_MEETING;
-            if let (Some(biased), Some((line, pot))) = (of_zener.first(), company.dividers().next())
-                && let Some(reference) = company.reference(biased, line, pot)
-            {
-                open = first.always_failing(&reference, open);
+    fn meet_zeners(
+        &mut self,
+        company: &Company<'_>,
+        references: &References<'_, '_>,
+        meetings: &Meetings<'_, '_>,
+    ) {
+        let still_open = |(zener, open): (usize, &Option<CheckSet>)| {
+            let zener = u32::try_from(zener).unwrap_or(u32::MAX);
+            let well = references.of_zener(zener);
+            let open = meetings.open_beside(open.unwrap_or_default(), well, company);
+            if open.is_empty() {
+                return Some(open);
             }
-            let holds = |check: &Check| {
-                meetings.of(*check).is_some_and(|m| of_zener.iter().any(|b| m.suits(b, None, None)))
-            };
-            let held: CheckSet = open.iter().filter(holds).collect();
-            open.without(held)
+            Some(meetings.open_beside(open, &company.biased_badly(zener), company))
         };
-        let open: Vec<CheckSet> = by_zener.par_iter().map(still_open).collect();
-        for (of_zener, open) in by_zener.iter().zip(open) {
-            if let Some(biased) = of_zener.first() {
-                close(&mut self.zeners, biased.zener as usize, OF_MEETING.without(open));
-            }
-        }
+        self.zeners = self.zeners.par_iter().enumerate().map(still_open).collect();
     }
 
     /// Each divider line and each pot beside zeners and amplifiers.
-    fn meet_dividers(&mut self, company: &Company<'_>, biased: &[Biased]) {
-        let meetings = Meetings::of_all_amplifiers(company);
+    fn meet_dividers(&mut self, references: &References<'_, '_>, meetings: &Meetings<'_, '_>) {
         let open_beside = |line: Option<u32>, pot: Option<u32>| {
             let holds = |check: &Check| {
                 let suits = |meeting: &Meeting<'_, '_>| {
-                    biased.par_iter().any(|biased| meeting.suits(biased, line, pot))
+                    references.any(|biased| meeting.suits(biased, line, pot))
                 };
                 meetings.of(*check).is_some_and(suits)
             };
             let held: CheckSet = CheckSet::DIVIDER.iter().filter(holds).collect();
             Some(CheckSet::DIVIDER.without(held))
         };
-        if meetings.first().is_some() {
-            let lines = 0..u32::try_from(self.divider_lines.len()).unwrap_or(u32::MAX);
-            self.divider_lines =
-                lines.into_par_iter().map(|line| open_beside(Some(line), None)).collect();
-            let pots = 0..u32::try_from(self.pots.len()).unwrap_or(u32::MAX);
-            self.pots = pots.into_par_iter().map(|pot| open_beside(None, Some(pot))).collect();
-        }
+        let lines = 0..u32::try_from(self.divider_lines.len()).unwrap_or(u32::MAX);
+        self.divider_lines = lines.map(|line| open_beside(Some(line), None)).collect();
+        let pots = 0..u32::try_from(self.pots.len()).unwrap_or(u32::MAX);
+        self.pots = pots.map(|pot| open_beside(None, Some(pot))).collect();
     }
 
     /// Each amplifier beside all reference sides.
-    fn meet_amplifiers(&mut self, company: &Company<'_>, biased: &[Biased]) {
+    fn meet_amplifiers(&mut self, company: &Company<'_>, references: &References<'_, '_>) {
         let held_by = |check: Check| -> Vec<CheckSet> {
             let only = CheckSet::of(&[check]);
             // One that is no worse than one that holds, holds; one that is no better than one that
@@ -166,8 +160,8 @@ impl OpenChecks {
                 }
                 let limits = Limits::asking(only);
                 let meeting = Meeting::of_amplifiers(company, &limits, std::iter::once(place));
-                let holds = meeting
-                    .is_some_and(|m| biased.par_iter().any(|biased| m.suits(biased, None, None)));
+                let holds =
+                    meeting.is_some_and(|m| references.any(|biased| m.suits(biased, None, None)));
                 if holds {
                     holding.push(amp)
                 } else {
@@ -361,8 +355,55 @@ impl<'m, 'c> Meetings<'m, 'c> {
         self.0.iter().find(|(c, _)| *c == check).map(|(_, meeting)| meeting)
     }
 
-    fn first(&self) -> Option<&Meeting<'m, 'c>> {
-        self.0.first().map(|(_, meeting)| meeting)
+    /// The checks of these that hold beside none of these references of one zener, whatever divider
+    /// and amplifier stand there.
+    fn open_beside(&self, open: CheckSet, biased: &[Biased], company: &Company<'_>) -> CheckSet {
+        let held_alone = |b: &Biased| OF_REFERENCE.without(b.failing.set);
+        let mut open = biased.iter().fold(open, |open, b| open.without(held_alone(b)));
+        // Most checks hold beside the first divider already.
+        if let (Some((_, meeting)), Some(biased)) = (self.0.first(), biased.first())
+            && let Some((line, pot)) = company.dividers().next()
+            && let Some(reference) = company.reference(biased, line, pot)
+        {
+            let failing = meeting.always_failing(&reference, open.in_both(OF_MEETING));
+            open = open.without(OF_MEETING.without(failing));
+        }
+        let holds = |check: &Check| {
+            self.of(*check).is_some_and(|m| biased.iter().any(|b| m.suits(b, None, None)))
+        };
+        let held: CheckSet = open.in_both(OF_MEETING).iter().filter(holds).collect();
+        open.without(held)
+    }
+}
+
+/// Every zener on every bias line: first those of which a value holds, then the others.
+struct References<'m, 'c> {
+    company: &'m Company<'c>,
+    well: Vec<Biased>,
+    badly: OnceLock<Vec<Biased>>,
+}
+
+impl<'m, 'c> References<'m, 'c> {
+    fn new(company: &'m Company<'c>) -> Self {
+        Self { company, well: company.biased_well(), badly: OnceLock::new() }
+    }
+
+    fn of_zener(&self, zener: u32) -> &[Biased] {
+        let from = self.well.partition_point(|b| b.zener < zener);
+        let to = self.well.partition_point(|b| b.zener <= zener);
+        self.well.get(from..to).unwrap_or_default()
+    }
+
+    /// Worked out when they are first asked for, and not from within other work that is shared out.
+    fn badly(&self) -> &[Biased] {
+        self.badly.get_or_init(|| {
+            let zeners = 0..u32::try_from(self.company.zeners().len()).unwrap_or(u32::MAX);
+            zeners.into_par_iter().flat_map_iter(|z| self.company.biased_badly(z)).collect()
+        })
+    }
+
+    fn any(&self, suits: impl Fn(&Biased) -> bool + Sync) -> bool {
+        self.well.par_iter().any(&suits) || self.badly().par_iter().any(&suits)
     }
 }
 

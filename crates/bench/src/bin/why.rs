@@ -108,5 +108,19 @@ fn show_reasons(rows: &Eligible<'_>, problem: &Problem<'_>, each_key: bool) {
 }
 
 fn show(stage: &str, time: Duration, result: &str) {
-    println!("{stage:<28} {:>10.1} ms  {result}", milliseconds(time));
+    let used = match processor_time() {
+        Some(seconds) => format!("{seconds:>8.2} s"),
+        None => String::new(),
+    };
+    println!("{stage:<28} {:>10.1} ms {used}  {result}", milliseconds(time));
+}
+
+/// Processor time of all threads so far, s; None where the system does not tell in this way.
+fn processor_time() -> Option<f64> {
+    // Linux counts in hundredths of a second.
+    let text = std::fs::read_to_string("/proc/self/stat").ok()?;
+    let (_, fields) = text.rsplit_once(')')?;
+    let ticks: u64 =
+        fields.split_whitespace().skip(11).take(2).filter_map(|n| n.parse::<u64>().ok()).sum();
+    Some(ticks as f64 / 100.0)
 }
