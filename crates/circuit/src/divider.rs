@@ -64,6 +64,11 @@ pub fn nominal_current_a(bias: &Bias, divider: &Divider) -> f64 {
     bias.vz_nominal_v / divider.ri.ohm
 }
 
+/// Some value of a line serves as RI: with the allowances it keeps the divider current in its window.
+pub fn has_value_in_window(bias: &Bias, line: &LineAtRail, rail: &Rail) -> bool {
+    !window(bias, line, rail).is_empty()
+}
+
 /// The places of `line.values` that may serve as RI: with the allowances the divider current stays
 /// in its window. Both corner currents fall as RI rises, so these places lie together.
 fn window(bias: &Bias, line: &LineAtRail, rail: &Rail) -> Range<usize> {

@@ -61,6 +61,19 @@ pub(crate) fn put<'b>(
     shop: &'b Shop,
     boards: u64,
 ) -> Option<Problem<'b>> {
+    let mut with = problem.clone();
+    put_in(&mut with, slot, place, shop, boards)?;
+    Some(with)
+}
+
+/// The same to a problem itself, which stays as it is where nothing is put.
+pub(crate) fn put_in<'b>(
+    with: &mut Problem<'b>,
+    slot: Slot,
+    place: Option<usize>,
+    shop: &'b Shop,
+    boards: u64,
+) -> Option<()> {
     fn set<T>(list: &mut Vec<T>, place: Option<usize>, item: T) -> Option<()> {
         match place {
             Some(place) => *list.get_mut(place)? = item,
@@ -83,7 +96,6 @@ pub(crate) fn put<'b>(
             figures,
         }
     }
-    let mut with = problem.clone();
     macro_rules! put {
         ($catalog:ident, $list:ident) => {{
             let row = shop.$catalog.rows.first()?;
@@ -112,7 +124,7 @@ pub(crate) fn put<'b>(
             set(&mut with.heatsinks, place, SinkPart { part, fits })?;
         }
     }
-    Some(with)
+    Some(())
 }
 
 /// The slots that a kind of catalog fills.

@@ -4,18 +4,18 @@
 //! Cells are filled in one after another and the row is read as the catalog reads it; the search says
 //! whether the part is then on the list. Nothing is concluded from one value to another but between
 //! two neighbours of a grid, of which one lets the part on the list and one does not: there the end is
-//! narrowed down by halving, and is tried on both of its sides.
+//! narrowed down, and is tried on both of its sides.
 
 use crate::fill::{Fill, fills_of};
-use crate::filled::{Cells, put, slots_of};
-use crate::probe::keep_only;
+use crate::filled::{Cells, slots_of};
+use crate::ranks::Standing;
 use catalog::column::Column;
 use catalog::{Kind, Shop};
 use circuit::slot::Slot;
 use eligible::{Eligible, UnprovenPart, eligible};
+use rayon::prelude::*;
 use select::SearchError;
 use select::problem::Problem;
-use select::ranking::{NO_SPREAD, shortlist};
 
 /// An unproven part that could reach the list.
 #[derive(Debug, Clone, PartialEq)]
@@ -102,8 +102,9 @@ pub const MOST_PARTS: usize = 400;
 /// At most so many ways of filling several blanks are tried.
 const MOST_WAYS: usize = 500;
 
-/// Halvings of the span between two values of a grid.
-const HALVINGS: usize = 60;
+/// The span between two values of a grid is taken apart in so many parts at once, so often at most.
+const PARTS: u32 = 32;
+const MOST_NARROWINGS: usize = 12;
 
 /// The unproven parts of a sheet that could be among the first `top` of its list.
 ///
@@ -111,9 +112,7 @@ const HALVINGS: usize = 60;
 /// What the search gives up with.
 pub fn gaps(rows: &Eligible<'_>, top: usize) -> Result<Gaps, SearchError> {
     let problem = rows.problem();
-    let list = shortlist(&problem, top, &NO_SPREAD)?;
-    // A part on the list has a score no worse than the last row's.
-    let worst_score = (list.len() == top).then(|| list.last().map(|c| c.score)).flatten();
+    let standing = Standing::new(&problem, rows.sheet.boards, top)?;
     let mut found = Gaps {
         top,
         gaps: Vec::new(),
@@ -122,16 +121,30 @@ pub fn gaps(rows: &Eligible<'_>, top: usize) -> Result<Gaps, SearchError> {
         barred: 0,
         left: rows.unproven.len().saturating_sub(MOST_PARTS),
     };
+    let mut open = Vec::new();
     for part in rows.unproven.iter().take(MOST_PARTS) {
-        let Some(row) = Row::of(part, rows, &problem, top, worst_score) else {
-            found.out_of_reach += 1;
-            continue;
-        };
-        if row.is_barred(rows) {
-            found.barred += 1;
-            continue;
+        match Row::of(part, rows, &standing, &problem) {
+            Some(row) if row.is_barred(rows) => found.barred += 1,
+            Some(row) => open.push((part, row)),
+            None => found.out_of_reach += 1,
         }
-        match row.gap(part)? {
+    }
+    // All parts of a kind in one search: most of them are out of reach.
+    let mut best: Vec<Option<(usize, Filling)>> = Vec::new();
+    for of_kind in open.chunk_by(|(a, _), (b, _)| a.kind == b.kind) {
+        let rows: Vec<&Row<'_, '_>> = of_kind.iter().map(|(_, row)| row).collect();
+        best.extend(most_favourable(&rows)?);
+    }
+    let gap =
+        |((part, row), best): (&(&UnprovenPart<'_>, Row<'_, '_>), &Option<(usize, Filling)>)| {
+            match best {
+                Some((rank, filling)) => row.gap(part, *rank, filling),
+                None => Ok(None),
+            }
+        };
+    let gaps: Result<Vec<Option<Gap>>, SearchError> = open.par_iter().zip(&best).map(gap).collect();
+    for gap in gaps? {
+        match gap {
             Some(gap) => found.gaps.push(gap),
             None => found.out_of_reach += 1,
         }
@@ -142,15 +155,12 @@ pub fn gaps(rows: &Eligible<'_>, top: usize) -> Result<Gaps, SearchError> {
     Ok(found)
 }
 
-/// A row with blanks, beside what may be chosen.
+/// A row with blanks, beside the list that it may reach.
 struct Row<'r, 'p> {
     cells: Cells,
     slots: &'static [Slot],
     blanks: Vec<(&'static Column, Vec<Fill>)>,
-    problem: &'r Problem<'p>,
-    boards: u64,
-    top: usize,
-    worst_score: Option<f64>,
+    standing: &'r Standing<'r, 'p>,
 }
 
 /// Texts for the blanks, in the order of their columns.
@@ -161,9 +171,8 @@ impl<'r, 'p> Row<'r, 'p> {
     fn of(
         part: &UnprovenPart<'_>,
         rows: &Eligible<'_>,
-        problem: &'r Problem<'p>,
-        top: usize,
-        worst_score: Option<f64>,
+        standing: &'r Standing<'r, 'p>,
+        problem: &Problem<'p>,
     ) -> Option<Self> {
         let file = file_number(rows.shop, part)?;
         let blanks = part
@@ -179,10 +188,7 @@ impl<'r, 'p> Row<'r, 'p> {
             cells: Cells::of(rows.shop, part.kind, file, part.line),
             slots: slots_of(part.kind),
             blanks,
-            problem,
-            boards: rows.sheet.boards,
-            top,
-            worst_score,
+            standing,
         })
     }
 
@@ -220,51 +226,30 @@ impl<'r, 'p> Row<'r, 'p> {
         counts.iter().all(|n| *n == 0) && alone.unproven.is_empty()
     }
 
-    /// The best rank of the part with its blanks filled, from 1; None where it is not on the list.
-    fn rank(&self, filling: &[String]) -> Result<Option<usize>, SearchError> {
-        let Some(shop) = self.filled(filling) else { return Ok(None) };
-        let mut with = self.problem.clone();
-        for &slot in self.slots {
-            let Some(put) = put(&with, slot, None, &shop, self.boards) else { return Ok(None) };
-            with = put;
+    /// The best rank of the part for each way of filling its blanks, from 1; None where it is not on
+    /// the list.
+    fn ranks(&self, fillings: &[Filling]) -> Result<Vec<Option<usize>>, SearchError> {
+        let shops: Vec<Option<Shop>> = fillings.par_iter().map(|f| self.filled(f)).collect();
+        match self.slots {
+            [slot] => self.standing.ranks_in(*slot, &shops),
+            // A line may serve in both of its slots at once, so each is asked for by itself.
+            slots => shops
+                .iter()
+                .map(|shop| match shop {
+                    Some(shop) => self.standing.rank_alone(slots, shop),
+                    None => Ok(None),
+                })
+                .collect(),
         }
-        let place_in = |slot: Slot| match slot {
-            Slot::Zener => with.zeners.len(),
-            Slot::BiasLine => with.bias_lines.len(),
-            Slot::Amplifier => with.amplifiers.len(),
-            Slot::DividerLine => with.divider_lines.len(),
-            Slot::Pot => with.pots.len(),
-            Slot::Pass => with.transistors.len(),
-            Slot::Heatsink => with.heatsinks.len(),
-        };
-        if !self.may_reach(&with, &shop)? {
-            return Ok(None);
-        }
-        let list = shortlist(&with, self.top, &NO_SPREAD)?;
-        let uses_it = |candidate: &select::candidate::Candidate| {
-            self.slots.iter().any(|&slot| candidate.place(slot) == place_in(slot).checked_sub(1))
-        };
-        Ok(list.iter().position(uses_it).map(|place| place + 1))
     }
 
-    /// The best candidate with the part has a score with which it may be on the list. Much is seen
-    /// here without searching among everything.
-    fn may_reach(&self, with: &Problem<'_>, shop: &Shop) -> Result<bool, SearchError> {
-        let Some(worst_score) = self.worst_score else { return Ok(true) };
-        for &slot in self.slots {
-            let mut pinned = with.clone();
-            let (maker, part) = names_in(shop, slot);
-            keep_only(&mut pinned, slot, maker, part);
-            let best = shortlist(&pinned, 1, &NO_SPREAD)?;
-            if best.first().is_some_and(|best| best.score <= worst_score * (1.0 + 1e-9)) {
-                return Ok(true);
-            }
-        }
-        Ok(false)
-    }
-
-    fn gap(&self, part: &UnprovenPart<'_>) -> Result<Option<Gap>, SearchError> {
-        let Some((mut rank, best)) = self.most_favourable()? else { return Ok(None) };
+    /// What each blank would have to hold, beside the filling with the best rank.
+    fn gap(
+        &self,
+        part: &UnprovenPart<'_>,
+        mut rank: usize,
+        best: &[String],
+    ) -> Result<Option<Gap>, SearchError> {
         let mut cells = Vec::new();
         for (n, (column, fills)) in self.blanks.iter().enumerate() {
             let mut beside: Vec<(&'static str, String)> = Vec::new();
@@ -274,7 +259,7 @@ impl<'r, 'p> Row<'r, 'p> {
                 }
             }
             for fill in fills {
-                let Some(wanted) = self.wanted(n, fill, &best, &mut rank)? else { continue };
+                let Some(wanted) = self.wanted(n, fill, best, &mut rank)? else { continue };
                 cells.push(CellGap { column: column.name, fill: fill.clone(), wanted, beside });
                 break;
             }
@@ -290,9 +275,9 @@ impl<'r, 'p> Row<'r, 'p> {
         }))
     }
 
-    /// The filling with the best rank among those that are tried, and that rank. With one blank every
-    /// value of its grid is tried, with several a few values of each.
-    fn most_favourable(&self) -> Result<Option<(usize, Filling)>, SearchError> {
+    /// The ways of filling the blanks that are tried: with one blank every value of its grid, with
+    /// several a few values of each.
+    fn ways(&self) -> Vec<Filling> {
         let options: Vec<Vec<String>> = self
             .blanks
             .iter()
@@ -303,15 +288,7 @@ impl<'r, 'p> Row<'r, 'p> {
                 fills.iter().flat_map(of).collect()
             })
             .collect();
-        let mut best: Option<(usize, Filling)> = None;
-        for way in ways(&options).take(MOST_WAYS) {
-            if let Some(rank) = self.rank(&way)?
-                && best.as_ref().is_none_or(|(known, _)| rank < *known)
-            {
-                best = Some((rank, way));
-            }
-        }
-        Ok(best)
+        ways(&options).take(MOST_WAYS).collect()
     }
 
     /// What the blank at a place would have to hold, the others as in `filling`.
@@ -322,29 +299,29 @@ impl<'r, 'p> Row<'r, 'p> {
         filling: &[String],
         best_rank: &mut usize,
     ) -> Result<Option<Wanted>, SearchError> {
-        let mut on_list = |text: String| -> Result<bool, SearchError> {
-            let mut with = filling.to_vec();
-            if let Some(cell) = with.get_mut(place) {
-                *cell = text;
-            }
-            let rank = self.rank(&with)?;
-            *best_rank = rank.map_or(*best_rank, |rank| rank.min(*best_rank));
-            Ok(rank.is_some())
+        let mut on_list = |texts: &[String]| -> Result<Vec<bool>, SearchError> {
+            let with = |text: &String| {
+                let mut with = filling.to_vec();
+                if let Some(cell) = with.get_mut(place) {
+                    cell.clone_from(text);
+                }
+                with
+            };
+            let ranks = self.ranks(&texts.iter().map(with).collect::<Vec<_>>())?;
+            *best_rank = ranks.iter().flatten().copied().fold(*best_rank, usize::min);
+            Ok(ranks.iter().map(Option::is_some).collect())
         };
         let Some(grid) = fill.grid() else {
-            let mut held = Vec::new();
-            for text in fill.texts() {
-                if on_list(text.clone())? {
-                    held.push(text);
-                }
-            }
+            let texts = fill.texts();
+            let held = on_list(&texts)?;
+            let held: Vec<String> =
+                texts.into_iter().zip(held).filter(|(_, on)| *on).map(|(text, _)| text).collect();
             return Ok((!held.is_empty()).then_some(Wanted::OneOf(held)));
         };
-        let mut at = |value: f64| on_list(fill.text(value));
-        let known: Vec<(f64, bool)> = grid
-            .iter()
-            .map(|&value| Ok((value, at(value)?)))
-            .collect::<Result<_, SearchError>>()?;
+        let mut at = |values: &[f64]| {
+            on_list(&values.iter().map(|value| fill.text(*value)).collect::<Vec<_>>())
+        };
+        let known: Vec<(f64, bool)> = grid.iter().copied().zip(at(&grid)?).collect();
         let mut spans = Vec::new();
         let mut low: Option<Option<SpanEnd>> = known.first().filter(|(_, on)| *on).map(|_| None);
         for pair in known.windows(2) {
@@ -363,27 +340,71 @@ impl<'r, 'p> Row<'r, 'p> {
     }
 }
 
+/// For rows of one kind the filling with the best rank among those that are tried, and that rank.
+fn most_favourable(rows: &[&Row<'_, '_>]) -> Result<Vec<Option<(usize, Filling)>>, SearchError> {
+    let ways: Vec<Vec<Filling>> = rows.iter().map(|row| row.ways()).collect();
+    let mut ranks = match rows.first() {
+        Some(first) if first.slots.len() == 1 => {
+            let all: Vec<(&&Row<'_, '_>, &Filling)> = rows
+                .iter()
+                .zip(&ways)
+                .flat_map(|(row, ways)| ways.iter().map(move |w| (row, w)))
+                .collect();
+            let shops: Vec<Option<Shop>> =
+                all.par_iter().map(|(row, way)| row.filled(way)).collect();
+            first.standing.ranks_in(first.slots[0], &shops)?
+        }
+        _ => {
+            let of_row = |(row, ways): (&&Row<'_, '_>, &Vec<Filling>)| row.ranks(ways);
+            let each: Result<Vec<_>, SearchError> = rows.iter().zip(&ways).map(of_row).collect();
+            each?.concat()
+        }
+    }
+    .into_iter();
+    let best = |ways: Vec<Filling>| {
+        let mut best: Option<(usize, Filling)> = None;
+        for way in ways {
+            if let Some(rank) = ranks.next().flatten()
+                && best.as_ref().is_none_or(|(known, _)| rank < *known)
+            {
+                best = Some((rank, way));
+            }
+        }
+        best
+    };
+    Ok(ways.into_iter().map(best).collect())
+}
+
 /// The end of a span between a figure that holds and one that fails.
 fn end(
     mut holds: f64,
     mut fails: f64,
-    at: &mut impl FnMut(f64) -> Result<bool, SearchError>,
+    at: &mut impl FnMut(&[f64]) -> Result<Vec<bool>, SearchError>,
 ) -> Result<SpanEnd, SearchError> {
-    for _ in 0..HALVINGS {
-        let middle = holds + (fails - holds) / 2.0;
-        if (holds - fails).abs() <= 1e-10 * holds.abs().max(fails.abs()) || middle == holds {
+    for _ in 0..MOST_NARROWINGS {
+        if (holds - fails).abs() <= 1e-10 * holds.abs().max(fails.abs()) {
             break;
         }
-        if at(middle)? { holds = middle } else { fails = middle }
+        let step = (fails - holds) / f64::from(PARTS);
+        let between: Vec<f64> = (1..PARTS)
+            .map(|n| holds + f64::from(n) * step)
+            .filter(|x| *x != holds && *x != fails)
+            .collect();
+        // From the side that holds: on to the last figure before the first that fails.
+        let on = at(&between)?;
+        let place = on.iter().position(|on| !on).unwrap_or(on.len());
+        let last = place.checked_sub(1).and_then(|n| between.get(n)).copied();
+        let first = between.get(place).copied();
+        if last.is_none() && first.is_none() {
+            break;
+        }
+        (holds, fails) = (last.unwrap_or(holds), first.unwrap_or(fails));
     }
     let upwards = holds > fails;
-    for digits in [4, 6, 8] {
-        let value = crate::change::round_toward(holds, digits, upwards);
-        if at(value)? {
-            return Ok(SpanEnd { value, holds, fails });
-        }
-    }
-    Ok(SpanEnd { value: holds, holds, fails })
+    let rounded = [4, 6, 8].map(|digits| crate::change::round_toward(holds, digits, upwards));
+    let on = at(&rounded)?;
+    let value = rounded.into_iter().zip(on).find(|(_, on)| *on).map_or(holds, |(value, _)| value);
+    Ok(SpanEnd { value, holds, fails })
 }
 
 /// Every choice of one text of each list, the last list changing fastest.
@@ -415,24 +436,6 @@ fn file_number(shop: &Shop, part: &UnprovenPart<'_>) -> Option<u16> {
         Kind::Heatsinks => shop.heatsinks.files.iter().map(|f| f.name.as_str()).collect(),
     };
     u16::try_from(names.iter().position(|name| *name == part.file)?).ok()
-}
-
-/// Maker and part of the one row that a shop holds for a slot.
-fn names_in(shop: &Shop, slot: Slot) -> (&str, &str) {
-    macro_rules! of {
-        ($catalog:ident) => {
-            shop.$catalog.rows.first().map(|r| (r.maker.as_str(), r.part.as_str()))
-        };
-    }
-    let names = match slot {
-        Slot::Zener => of!(zeners),
-        Slot::BiasLine | Slot::DividerLine => of!(resistors),
-        Slot::Amplifier => of!(opamps),
-        Slot::Pot => of!(pots),
-        Slot::Pass => of!(transistors),
-        Slot::Heatsink => of!(heatsinks),
-    };
-    names.unwrap_or_default()
 }
 
 #[cfg(test)]

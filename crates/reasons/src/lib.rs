@@ -35,6 +35,7 @@ pub mod names;
 pub mod nothing;
 pub mod part;
 pub mod probe;
+mod ranks;
 pub mod remedy;
 pub mod requirement;
 mod scout;

@@ -7,7 +7,10 @@
 use crate::check_set::CheckSet;
 use crate::company::{Biased, Company};
 use crate::limits::Limits;
-use crate::scout::{Meeting, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, undominated};
+use crate::scout::{
+    Meeting, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, best_figures_to_drive,
+    undominated,
+};
 use circuit::amplifier::AmplifierAtRail;
 use circuit::check::Check;
 use circuit::pass::PassFigures;
@@ -213,7 +216,7 @@ impl OpenChecks {
         let mounted = company.passes().iter().zip(&self.transistors);
         let mounted: Vec<&PassFigures> =
             mounted.filter(|(_, open)| open.is_some()).map(|(pass, _)| pass).collect();
-        let best = best_to_drive(&mounted);
+        let best = best_figures_to_drive(&mounted);
         for (amp, open) in company.amplifiers().iter().zip(&mut self.amplifiers) {
             for pass in &best {
                 let held = OF_DRIVE.without(company.drive_failing(amp, pass).set);
@@ -274,32 +277,6 @@ impl OpenChecks {
             })
             .collect()
     }
-}
-
-/// Transistors that tell of every check in which an amplifier drives one whether any of these lets it
-/// hold. Each of these checks meets one figure of the transistor, so the best of each figure will do.
-/// Leakage counts by its size, by whether it is given, and by whether it passes the amplifier, so for
-/// each kind there is one.
-fn best_to_drive(passes: &[&PassFigures]) -> Vec<PassFigures> {
-    let Some(best) = passes.iter().map(|pass| **pass).reduce(|mut best, pass| {
-        best.base.most_a = best.base.most_a.min(pass.base.most_a);
-        best.vbe_hi_v = best.vbe_hi_v.min(pass.vbe_hi_v);
-        best.drive_power_w = best.drive_power_w.min(pass.drive_power_w);
-        best
-    }) else {
-        return Vec::new();
-    };
-    let mut kinds: Vec<PassFigures> = Vec::new();
-    for &&PassFigures { junctions, ileak_a, .. } in passes {
-        let is_alike =
-            |k: &PassFigures| k.junctions == junctions && k.ileak_a.is_some() == ileak_a.is_some();
-        match kinds.iter_mut().find(|k| is_alike(k)) {
-            Some(kind) if kind.ileak_a <= ileak_a => {}
-            Some(kind) => kind.ileak_a = ileak_a,
-            None => kinds.push(PassFigures { junctions, ileak_a, ..best }),
-        }
-    }
-    kinds
 }
 
 /// What an amplifier lets this check find is no worse than what the other does, whatever stands beside

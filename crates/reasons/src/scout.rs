@@ -17,6 +17,7 @@ use crate::limits::Limits;
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::{Aim, may_hold, supply_checks};
 use circuit::check::Check;
+use circuit::divider::has_value_in_window;
 use circuit::drive;
 use circuit::pass::PassFigures;
 use circuit::reference::{Chosen, ZenerAtRail, choose_rz, chosen_rz};
@@ -166,6 +167,32 @@ fn best_to_drive<'c>(company: &'c Company<'_>, powers: &[Power]) -> Vec<(Power, 
     undominated(powers.iter().filter_map(with_figures), |(_, a), (_, b)| drives_as_well(a, b))
 }
 
+/// Transistors that tell of every check in which an amplifier drives one whether any of these lets it
+/// hold. Each of these checks meets one figure of the transistor, so the best of each figure will do.
+/// Leakage counts by its size, by whether it is given, and by whether it passes the amplifier, so for
+/// each kind there is one.
+pub(crate) fn best_figures_to_drive(passes: &[&PassFigures]) -> Vec<PassFigures> {
+    let Some(best) = passes.iter().map(|pass| **pass).reduce(|mut best, pass| {
+        best.base.most_a = best.base.most_a.min(pass.base.most_a);
+        best.vbe_hi_v = best.vbe_hi_v.min(pass.vbe_hi_v);
+        best.drive_power_w = best.drive_power_w.min(pass.drive_power_w);
+        best
+    }) else {
+        return Vec::new();
+    };
+    let mut kinds: Vec<PassFigures> = Vec::new();
+    for &&PassFigures { junctions, ileak_a, .. } in passes {
+        let is_alike =
+            |k: &PassFigures| k.junctions == junctions && k.ileak_a.is_some() == ileak_a.is_some();
+        match kinds.iter_mut().find(|k| is_alike(k)) {
+            Some(kind) if kind.ileak_a <= ileak_a => {}
+            Some(kind) => kind.ileak_a = ileak_a,
+            None => kinds.push(PassFigures { junctions, ileak_a, ..best }),
+        }
+    }
+    kinds
+}
+
 /// The items to which no other is as good; of equals the first.
 pub(crate) fn undominated<T: Copy>(
     items: impl Iterator<Item = T>,
@@ -190,6 +217,8 @@ pub(crate) fn undominated<T: Copy>(
 pub(crate) fn drivers_of(company: &Company<'_>, limits: &Limits, powers: &[Power]) -> Vec<Driver> {
     let best = best_to_drive(company, powers);
     let rail = company.rail();
+    let figures: Vec<&PassFigures> = best.iter().map(|(_, pass)| *pass).collect();
+    let bounds = best_figures_to_drive(&figures);
     let driver = |(place, amp): (usize, &AmplifierAtRail)| {
         if !limits.let_all(|t| supply_checks(amp, rail, t)) {
             return None;
@@ -197,6 +226,10 @@ pub(crate) fn drivers_of(company: &Company<'_>, limits: &Limits, powers: &[Power
         let drives = |(_, pass): &&(Power, &PassFigures)| {
             limits.let_all(|t| drive::checks(amp, pass, rail, t))
         };
+        // What fails with the best figures of all fails with each.
+        if !bounds.iter().any(|pass| limits.let_all(|t| drive::checks(amp, pass, rail, t))) {
+            return None;
+        }
         let (power, _) = best.iter().find(drives)?;
         Some(Driver { amplifier: u32::try_from(place).ok()?, power: *power })
     };
@@ -317,7 +350,7 @@ impl<'m, 'c> Meeting<'m, 'c> {
     /// A reference side of this biased zener keeps the limits: with any divider line and pot, or with
     /// those that are given.
     pub fn suits(&self, biased: &Biased, line: Option<u32>, pot: Option<u32>) -> bool {
-        self.may_suit(biased.bias.vz_lo_v, biased.bias.vz_hi_v)
+        self.may_suit(biased.bias.vz_lo_v, biased.bias.vz_hi_v, self.has_divider())
             && self.beside_biased(biased, line, pot).is_some()
     }
 
@@ -332,11 +365,12 @@ impl<'m, 'c> Meeting<'m, 'c> {
         }
         // V0hi never falls and V0lo never rises with the zener's own heat.
         let v0 = zener.test_voltage(0.0, rail);
-        self.may_suit(v0.lo_v, v0.hi_v).then_some(v0.hi_v / v0.lo_v)
+        self.may_suit(v0.lo_v, v0.hi_v, self.has_divider()).then_some(v0.hi_v / v0.lo_v)
     }
 
-    /// A reference between these voltages, or a wider one, may suit the best of the amplifiers.
-    fn may_suit(&self, lo_v: f64, hi_v: f64) -> bool {
+    /// A reference between these voltages, or a wider one, may suit the best of the amplifiers: with a
+    /// divider inside the window, or where that is not sure with or without one.
+    fn may_suit(&self, lo_v: f64, hi_v: f64, has_divider: bool) -> bool {
         let rail = self.company.rail();
         let lets = |finding| self.limits.lets(&finding);
         if !lets(self.best.amp_input_low(lo_v)) || !lets(self.best.amp_input_high(hi_v, rail)) {
@@ -344,7 +378,7 @@ impl<'m, 'c> Meeting<'m, 'c> {
         }
         let error_v = self.best.input_error(hi_v).error_v;
         // A divider that does not exist breaks no band.
-        let can_tell = self.has_divider() && lo_v > error_v;
+        let can_tell = has_divider && lo_v > error_v;
         !can_tell || self.aim.is_none_or(|aim| aim.may_suit(lo_v, hi_v, error_v, self.line_spread))
     }
 
@@ -364,7 +398,7 @@ impl<'m, 'c> Meeting<'m, 'c> {
                 };
                 self.limits.let_all(|t| zener.checks(&bias, at_rail, t)).then_some(bias)?
             };
-            if !self.may_suit(bias.vz_lo_v, bias.vz_hi_v) {
+            if !self.may_suit(bias.vz_lo_v, bias.vz_hi_v, self.has_divider()) {
                 return None;
             }
             let biased = Biased { zener: place, line, bias, failing: Default::default() };
@@ -386,15 +420,9 @@ impl<'m, 'c> Meeting<'m, 'c> {
             return self.met(&company.reference(biased, line, pot)?);
         }
         let lines = (0u32..).zip(&company.divider_lines);
-        lines.filter(|(place, _)| line.is_none_or(|line| line == *place)).find_map(
-            |(line, at_rail)| {
-                if company.rail().is_adjustable() {
-                    self.beside_line(biased, line, at_rail, pot)
-                } else {
-                    self.met(&company.reference(biased, line, None)?)
-                }
-            },
-        )
+        lines
+            .filter(|(place, _)| line.is_none_or(|line| line == *place))
+            .find_map(|(line, at_rail)| self.beside_line(biased, line, at_rail, pot))
     }
 
     /// With a divider line and any pot, or with the one that is given.
@@ -405,20 +433,27 @@ impl<'m, 'c> Meeting<'m, 'c> {
         at_rail: &LineAtRail,
         pot: Option<u32>,
     ) -> Option<(Driver, ReferencePlaces)> {
-        let has_divider = self.has_divider();
+        let (company, bias) = (self.company, &biased.bias);
+        let is_adjustable = company.rail().is_adjustable();
+        if !has_value_in_window(bias, at_rail, company.rail()) {
+            // Without a divider all pots are alike.
+            let first = is_adjustable.then(|| pot.unwrap_or(0));
+            return self.met(&company.reference(biased, line, first)?);
+        }
+        if !self.may_suit(bias.vz_lo_v, bias.vz_hi_v, true) {
+            return None;
+        }
+        if !is_adjustable {
+            return self.met(&company.reference(biased, line, None)?);
+        }
         let may_serve = |(place, relaxed): &(u32, &PotAtRail)| {
             pot.is_none_or(|pot| pot == *place)
-                && (!has_divider || self.pot_may_serve(biased, at_rail, *place, relaxed))
+                && self.pot_may_serve(biased, at_rail, *place, relaxed)
         };
-        for (pot, _) in (0u32..).zip(&self.pots).filter(may_serve) {
-            let reference = self.company.reference(biased, line, Some(pot))?;
-            let met = self.met(&reference);
-            // Whether any value lies in the window is the same for every pot.
-            if met.is_some() || reference.divider.is_none() {
-                return met;
-            }
-        }
-        None
+        (0u32..)
+            .zip(&self.pots)
+            .filter(may_serve)
+            .find_map(|(pot, _)| self.met(&company.reference(biased, line, Some(pot))?))
     }
 
     /// A pot may serve beside a biased zener and the best of the amplifiers.
