@@ -8,6 +8,7 @@ mod new;
 mod order;
 mod plot;
 mod shortlist;
+mod substitute;
 mod verify;
 mod whynot;
 
@@ -31,6 +32,7 @@ enum Command {
     Whynot(whynot::Arguments),
     Order(order::Arguments),
     Plot(plot::Arguments),
+    Substitute(substitute::Arguments),
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
@@ -94,6 +96,7 @@ impl Cli {
             Command::Whynot(arguments) => arguments.showing,
             Command::Order(arguments) => arguments.showing,
             Command::Plot(arguments) => arguments.showing,
+            Command::Substitute(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
             Command::New(arguments) => arguments.showing(),
@@ -111,6 +114,7 @@ pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
         Command::Whynot(arguments) => whynot::run(&arguments, screen),
         Command::Order(arguments) => order::run(&arguments, screen),
         Command::Plot(arguments) => plot::run(&arguments, screen),
+        Command::Substitute(arguments) => substitute::run(&arguments, screen),
         Command::Catalog(CatalogCommand::Check(arguments)) => {
             catalog_check::run(&arguments, screen)
         }

@@ -3,6 +3,8 @@
 mod arguments;
 mod command;
 mod desk;
+mod designs;
+mod endings;
 mod files;
 mod load;
 mod order_lines;

@@ -12,6 +12,7 @@
 //! | [`catalog_check`] | what a folder of catalogs holds and lacks |
 //! | [`proof`] | every check of a design, with formulas, numbers and sources |
 //! | [`mod@reasons`] | why nothing qualifies, why a part is not on the list, which blanks to fill |
+//! | [`mod@substitute`] | what can go into a design in place of a part that is gone |
 //! | [`notices`] | faults and doubts with the text at fault underlined |
 //! | [`remark`] | what no result checks, and cautions |
 //! | [`identity`] | a candidate's short id |
@@ -46,6 +47,7 @@ pub mod reference;
 pub mod remark;
 pub mod shortlist;
 pub mod spreadsheet;
+pub mod substitute;
 pub mod table;
 pub mod terminal;
 pub mod workbook;

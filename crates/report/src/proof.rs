@@ -40,7 +40,7 @@ mod pass;
 mod reference;
 mod teller;
 pub mod terminal;
-mod told;
+pub(crate) mod told;
 
 use crate::figure::{Figure as Exact, Pairs};
 use crate::hash::HashOf;

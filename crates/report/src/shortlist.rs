@@ -437,7 +437,7 @@ impl<'a> SlotRow<'a> {
 }
 
 impl Output {
-    fn new(output: &OutputFigures) -> Self {
+    pub(crate) fn new(output: &OutputFigures) -> Self {
         match output {
             OutputFigures::Fixed(o) => Output::Fixed {
                 low_v: Figure(o.lo_v),
@@ -455,7 +455,7 @@ impl Output {
 }
 
 impl CheckRow {
-    fn new(finding: &Finding) -> Self {
+    pub(crate) fn new(finding: &Finding) -> Self {
         Self {
             name: finding.check.name(),
             kind: finding.check.kind().name(),

@@ -158,7 +158,7 @@ impl Case<'_, '_> {
     }
 
     /// Places that may be chosen for a slot.
-    pub(crate) fn places(&self, slot: Slot) -> &[u32] {
+    pub fn places(&self, slot: Slot) -> &[u32] {
         &self.places[slot as usize]
     }
 

@@ -1,6 +1,6 @@
 //! Cases made of catalogs and design files, and replacements turned into parts again.
 
-use crate::built::{BoardOf, Built, BuiltSink, Case, Choice, Choices};
+use crate::built::{ALL_KEPT, BoardOf, Built, BuiltSink, Case, Choice, Choices};
 use crate::change::Board;
 use crate::ground::Ground;
 use crate::replace::Replacement;
@@ -159,9 +159,18 @@ impl<'a> Desk<'a> {
 
     /// The parts and values of a design with a replacement in it.
     pub fn mended(&self, parts: &Parts<'a>, with: &Replacement) -> Parts<'a> {
+        self.fitted_with(parts, &with.choices, [with.rz_ohm, with.upper_ohm, with.ri_ohm])
+    }
+
+    fn fitted_with(
+        &self,
+        parts: &Parts<'a>,
+        choices: &Choices,
+        [rz_ohm, upper_ohm, ri_ohm]: [f64; 3],
+    ) -> Parts<'a> {
         let shop = self.eligible.shop;
         let rows = &self.eligible;
-        let choice = |slot: Slot| with.choices[slot as usize];
+        let choice = |slot: Slot| choices[slot as usize];
         Parts {
             zener: put(parts.zener, choice(Slot::Zener), &rows.zeners, shop, &shop.zeners),
             bias_line: put(
@@ -195,10 +204,20 @@ impl<'a> Desk<'a> {
                     DesignPart::<Sink> { found, catalog, shop, inline: None }
                 }),
             },
-            rz_ohm: with.rz_ohm,
-            upper_ohm: with.upper_ohm,
-            ri_ohm: with.ri_ohm,
+            rz_ohm,
+            upper_ohm,
+            ri_ohm,
         }
+    }
+
+    /// The parts of a design with the first part that may go in for each that is gone, and nothing else
+    /// changed. None where nothing may go in.
+    pub fn exchanged(&self, parts: &Parts<'a>, case: &Case<'_, '_>) -> Option<Parts<'a>> {
+        let mut choices = ALL_KEPT;
+        for slot in Slot::ALL.into_iter().filter(|slot| case.is_gone(*slot)) {
+            choices[slot as usize] = Choice::Row(*case.places(slot).first()?);
+        }
+        Some(self.fitted_with(parts, &choices, [parts.rz_ohm, parts.upper_ohm, parts.ri_ohm]))
     }
 
     /// The row behind a choice: stock, lead time, life-cycle word, price.
@@ -280,6 +299,27 @@ impl Offer {
             status: row.status,
         }
     }
+}
+
+/// The resistors of a design that its lines do not stock, each with its key, Ω. A design may hold odd
+/// values; a line that goes in for another one has only its own.
+pub fn not_stocked(parts: &Parts<'_>) -> Vec<(&'static str, f64)> {
+    use design::keys::Resistor;
+    let upper = if parts.pot.is_some() { Resistor::Rx } else { Resistor::Rf };
+    [
+        (Resistor::Rz, &parts.bias_line, parts.rz_ohm),
+        (upper, &parts.divider_line, parts.upper_ohm),
+        (Resistor::Ri, &parts.divider_line, parts.ri_ohm),
+    ]
+    .into_iter()
+    .filter(|(_, line, ohm)| {
+        let stocked = line.row().is_some_and(|row| {
+            row.figures.values_ohm.iter().any(|value| crate::built::same_ohm(*value, *ohm))
+        });
+        *ohm != 0.0 && !stocked
+    })
+    .map(|(resistor, _, ohm)| (resistor.key(), ohm))
+    .collect()
 }
 
 /// Makes every check of a design's parts and values; None where figures are not known.

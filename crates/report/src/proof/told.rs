@@ -4,7 +4,7 @@ use design::condition::{Fact, Verdict};
 use sheet::Sheet;
 
 /// What was found under a rule, and where it fails what is asked.
-pub(super) fn fact(verdict: &Verdict, sheet: &Sheet) -> String {
+pub(crate) fn fact(verdict: &Verdict, sheet: &Sheet) -> String {
     let holds = verdict.holds;
     match &verdict.fact {
         Fact::Polarity(found) if holds => found.clone(),
