@@ -7,6 +7,7 @@ mod man;
 mod new;
 mod order;
 mod plot;
+mod shortage;
 mod shortlist;
 mod substitute;
 mod verify;
@@ -33,6 +34,7 @@ enum Command {
     Order(order::Arguments),
     Plot(plot::Arguments),
     Substitute(substitute::Arguments),
+    Shortage(shortage::Arguments),
     /// Look after catalogs
     #[command(subcommand)]
     Catalog(CatalogCommand),
@@ -97,6 +99,7 @@ impl Cli {
             Command::Order(arguments) => arguments.showing,
             Command::Plot(arguments) => arguments.showing,
             Command::Substitute(arguments) => arguments.showing,
+            Command::Shortage(arguments) => arguments.showing,
             Command::Catalog(CatalogCommand::Check(arguments)) => arguments.showing,
             Command::Catalog(CatalogCommand::Gaps(arguments)) => arguments.showing,
             Command::New(arguments) => arguments.showing(),
@@ -115,6 +118,7 @@ pub(crate) fn run(cli: Cli, screen: &Screen) -> Result<Answer, Fault> {
         Command::Order(arguments) => order::run(&arguments, screen),
         Command::Plot(arguments) => plot::run(&arguments, screen),
         Command::Substitute(arguments) => substitute::run(&arguments, screen),
+        Command::Shortage(arguments) => shortage::run(&arguments, screen),
         Command::Catalog(CatalogCommand::Check(arguments)) => {
             catalog_check::run(&arguments, screen)
         }

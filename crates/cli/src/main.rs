@@ -6,6 +6,7 @@ mod desk;
 mod designs;
 mod endings;
 mod files;
+mod folder;
 mod load;
 mod order_lines;
 mod page;

@@ -12,6 +12,7 @@
 //! | [`catalog_check`] | what a folder of catalogs holds and lacks |
 //! | [`proof`] | every check of a design, with formulas, numbers and sources |
 //! | [`mod@reasons`] | why nothing qualifies, why a part is not on the list, which blanks to fill |
+//! | [`shortage`] | the same over a folder of designs; which parts a shortage would hit hardest |
 //! | [`mod@substitute`] | what can go into a design in place of a part that is gone |
 //! | [`notices`] | faults and doubts with the text at fault underlined |
 //! | [`remark`] | what no result checks, and cautions |
@@ -45,6 +46,7 @@ pub mod ranking_csv;
 pub mod reasons;
 pub mod reference;
 pub mod remark;
+pub mod shortage;
 pub mod shortlist;
 pub mod spreadsheet;
 pub mod substitute;

@@ -10,7 +10,8 @@
 //! | [`replace`] | every replacement with the least that changes with it |
 //! | [`cover`] | the fewest new parts for many designs, then the cheapest |
 //! | [`exposed`] | how many replacements a part has |
-//! | [`desk`] | the same for catalogs and design files |
+//! | [`desk`] | cases made of catalogs and design files |
+//! | [`shortage`] | many designs at once |
 //!
 //! Every check is one of `circuit`; this crate holds no formula, opens no file and prints nothing.
 
@@ -23,4 +24,5 @@ pub mod ground;
 pub mod power;
 pub mod reference;
 pub mod replace;
+pub mod shortage;
 pub mod values;

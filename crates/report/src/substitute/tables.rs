@@ -3,6 +3,7 @@
 use super::fit::{Fit, Reading};
 use super::mend::{Level, Mend, PartChange, ValueChange};
 use super::{Substitution, slot_words};
+use crate::figure::Figure;
 use crate::table::{Cell, Column, Document, Table};
 use ::substitute::change::Board;
 use circuit::slot::Slot;
@@ -49,7 +50,7 @@ fn row(mend: &Mend) -> Vec<Cell> {
         goes_in(mend).into(),
         also_changes(mend).into(),
         first.map(|part| board_words(part.on_board)).into(),
-        mend.after.cost.into(),
+        money(mend.after.cost),
         mend.after.margin.into(),
         mend.after.slack.into(),
         first.and_then(|part| part.stock).into(),
@@ -68,6 +69,11 @@ fn row(mend: &Mend) -> Vec<Cell> {
         mend.after.binding_function.into(),
         mend.after.junction_c.into(),
     ]
+}
+
+/// A sum of money without what adding up left beyond the tenth digit.
+pub(crate) fn money(figure: Option<Figure>) -> Cell {
+    figure.map(|f| quantity::digits::rounded(f.0)).into()
 }
 
 /// The word of a level, as in JSON.
@@ -89,6 +95,42 @@ pub(crate) fn goes_in(mend: &Mend) -> String {
         }
     }
     names.join(" + ")
+}
+
+/// The list for a terminal: makers are left out where the part before has another number.
+pub(crate) fn narrow(of: &Substitution) -> Table {
+    let mut table = replacements(of);
+    let (goes_in, also) = (table.place("goes in"), table.place("also changes"));
+    for (row, mend) in table.rows.iter_mut().zip(&of.replacements) {
+        for (place, text) in [(goes_in, short_goes_in(mend)), (also, short_also(mend))] {
+            if let Some(cell) = place.and_then(|place| row.get_mut(place)) {
+                *cell = text.into();
+            }
+        }
+    }
+    table
+}
+
+/// A part without its maker, unless it bears the number of the part before.
+fn short(part: &PartChange) -> &str {
+    let name = part.is.as_deref().unwrap_or("none");
+    if part.same_number_differs.is_some() {
+        return name;
+    }
+    name.split_once('/').map_or(name, |(_, part)| part)
+}
+
+/// As [`goes_in`], in short.
+pub(crate) fn short_goes_in(mend: &Mend) -> String {
+    let mut names: Vec<&str> = mend.replacing().map(short).collect();
+    names.dedup();
+    names.join(" + ")
+}
+
+/// As [`also_changes`], in short.
+pub(crate) fn short_also(mend: &Mend) -> String {
+    let parts = mend.further().map(|part| short(part).to_owned());
+    parts.chain(mend.values.iter().map(value_words)).collect::<Vec<_>>().join(", ")
 }
 
 /// What changes beside it, in words; empty where nothing does.
@@ -298,7 +340,7 @@ pub fn changes(mend: &Mend, currency: Option<&String>) -> Table {
             part.was.clone().unwrap_or_else(|| "none".to_owned()).into(),
             part.is.clone().unwrap_or_else(|| "none".to_owned()).into(),
             board_words(part.on_board).into(),
-            part.price.into(),
+            money(part.price),
             part.stock.into(),
             part.lead_weeks.into(),
             part.status.into(),

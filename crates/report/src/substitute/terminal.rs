@@ -3,7 +3,7 @@
 use super::fit::{Fit, row_holds};
 use super::mend::Mend;
 use super::tables::{
-    also_changes, changes, checks, figures, replacements, same_numbers, troubles,
+    also_changes, changes, checks, figures, narrow, same_numbers, troubles,
 };
 use super::{Looked, Substitution, slot_words};
 use crate::look::Look;
@@ -41,7 +41,7 @@ pub fn substitution(of: &Substitution, look: &Look) -> String {
     };
     match (one, of.replacements.is_empty()) {
         (Some(mend), _) => text += &whole(of, mend, look),
-        (None, true) => text += &look.paragraph(&nothing(&of.looked), 0, 2),
+        (None, true) => text += &look.paragraph(&nothing(of), 0, 2),
         (None, false) => text += &list(of, look),
     }
     text
@@ -95,11 +95,15 @@ fn failing(fit: &Fit) -> String {
     checks.chain(fit.conditions.iter().cloned()).collect::<Vec<_>>().join("; ")
 }
 
-fn nothing(looked: &Looked) -> String {
-    if looked.everything {
-        "Nothing can go in, whatever else changes.".to_owned()
-    } else {
-        format!("Nothing can go in, as far as it was looked: {}.", how_far(looked))
+fn nothing(of: &Substitution) -> String {
+    let what = of.with.as_deref().unwrap_or("Nothing");
+    let negation = if of.with.is_some() { "can't" } else { "can" };
+    match of.looked.everything {
+        true => format!("{what} {negation} go in, whatever else changes."),
+        false => format!(
+            "{what} {negation} go in, as far as it was looked: {}.",
+            how_far(&of.looked)
+        ),
     }
 }
 
@@ -116,7 +120,7 @@ pub(crate) fn how_far(looked: &Looked) -> String {
 
 fn list(of: &Substitution, look: &Look) -> String {
     let mut text = String::from("\n");
-    text += &screen::table(&replacements(of), &SHOWN, look);
+    text += &screen::table(&narrow(of), &SHOWN, look);
     text.push('\n');
     let shown = of.replacements.len();
     let looked = how_far(&of.looked);
