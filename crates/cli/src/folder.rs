@@ -34,10 +34,9 @@ impl Folder {
             let mut found = Vec::new();
             match designs.read(path, &mut found) {
                 Ok(design) => read.designs.push(design),
-                Err(_) => read.broken.push(Broken {
-                    file: path.display().to_string(),
-                    faults: faults(&found),
-                }),
+                Err(_) => read
+                    .broken
+                    .push(Broken { file: path.display().to_string(), faults: faults(&found) }),
             }
             notices.append(&mut found);
         }

@@ -89,6 +89,7 @@ fn crates_keep_the_promises_of_their_does_not_sentences() {
         ("eligible", vec![&PRINTING[..], &FILES]),
         ("design", vec![&PRINTING[..], &FILES, &THREADS]),
         ("reasons", vec![&PRINTING[..], &FILES]),
+        ("substitute", vec![&PRINTING[..], &FILES]),
         ("report", vec![&PRINTING[..], &THREADS]),
     ]);
     for (name, promise) in promises {

@@ -130,11 +130,9 @@ impl Standing {
                 .as_ref()
                 .map(|p| PassFigures::new(p.part.figures, &case.ground.duty, rail)),
             sink: match &built.heatsink {
-                BuiltSink::On(sink) => Some(CaseTemperatures::on_heatsink(
-                    sink.part.figures,
-                    &case.ground.duty,
-                    rail,
-                )),
+                BuiltSink::On(sink) => {
+                    Some(CaseTemperatures::on_heatsink(sink.part.figures, &case.ground.duty, rail))
+                }
                 BuiltSink::None | BuiltSink::CannotStay => None,
             },
         }

@@ -152,7 +152,8 @@ fn dominated(designs: &[Vec<Placed<'_>>]) -> std::collections::BTreeSet<u32> {
 fn serves_as_well(better: &[(usize, f64)], other: &[(usize, f64)]) -> bool {
     let mut rest = better.iter();
     other.iter().all(|(design, cost)| {
-        rest.find(|(d, _)| d == design).is_some_and(|(_, c)| compare(*c, *cost) != Ordering::Greater)
+        rest.find(|(d, _)| d == design)
+            .is_some_and(|(_, c)| compare(*c, *cost) != Ordering::Greater)
     })
 }
 

@@ -105,7 +105,8 @@ impl<'a> Powers<'_, '_, 'a> {
                 (BuiltSink::None, _) => {
                     let own = CaseTemperatures::on_own_sink(duty, rail)
                         .map(|on_it| Mounted::on(on_it, figures, duty));
-                    let in_air = || Unmounted::new(part.part.figures, duty, rail).map(Mounted::from);
+                    let in_air =
+                        || Unmounted::new(part.part.figures, duty, rail).map(Mounted::from);
                     if let Some(mounted) = own.or_else(in_air) {
                         take(Choice::Kept, mounted, 0.0);
                     }

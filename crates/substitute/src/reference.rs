@@ -117,8 +117,7 @@ impl<'s> References<'s, '_, '_> {
 
     /// Some values hold with these parts.
     pub fn some_values_hold(&self, choices: &Choices, amplifier: &AmplifierAtRail) -> bool {
-        self.parts(choices)
-            .is_some_and(|parts| self.beside(choices, &parts, amplifier).some_hold())
+        self.parts(choices).is_some_and(|parts| self.beside(choices, &parts, amplifier).some_hold())
     }
 
     fn fit(&self, choices: Choices, amplifier: &AmplifierAtRail) -> Option<ReferenceFit> {
@@ -170,9 +169,7 @@ impl<'s> References<'s, '_, '_> {
             Slot::Zener => self.standing.zener.is_some(),
             Slot::BiasLine => self.standing.bias_line.is_some(),
             Slot::DividerLine => self.standing.divider_line.is_some(),
-            Slot::Pot => {
-                self.standing.pot.is_some() || !self.case.ground.rail().is_adjustable()
-            }
+            Slot::Pot => self.standing.pot.is_some() || !self.case.ground.rail().is_adjustable(),
             _ => false,
         }
     }

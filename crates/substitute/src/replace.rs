@@ -260,8 +260,7 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
         solved: &HashMap<Choices, Replacement>,
     ) -> (Vec<Replacement>, bool) {
         let (case, rail) = (self.case, self.case.ground.rail());
-        let Ok(supply_stress) =
-            WhileHolding::over(|t| supply_checks(beside.amplifier, rail, t))
+        let Ok(supply_stress) = WhileHolding::over(|t| supply_checks(beside.amplifier, rail, t))
         else {
             return (Vec::new(), false);
         };
@@ -302,10 +301,8 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
                     let extent = of_amplifier + reference.extent + power.extent;
                     for r in &reference.points {
                         for (p, drive_stress) in &power.points {
-                            let stress = supply_stress
-                                .max(r.values.stress)
-                                .max(p.stress)
-                                .max(*drive_stress);
+                            let stress =
+                                supply_stress.max(r.values.stress).max(p.stress).max(*drive_stress);
                             let with = self.replacement(beside, r, p, stress, extent);
                             match found.get_mut(&label) {
                                 Some(held) if order(case, &with, held) != Ordering::Less => {}
@@ -341,8 +338,11 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
             let Some(offers) = least(&mut best, label, fit.extent) else { continue };
             for values in &fit.values {
                 let upper = if values.divider.upper.is_link() { 0.0 } else { piece };
-                let point =
-                    ReferencePoint { choices: fit.choices, values: *values, cost: fit.cost + upper };
+                let point = ReferencePoint {
+                    choices: fit.choices,
+                    values: *values,
+                    cost: fit.cost + upper,
+                };
                 keep_front(&mut offers.points, point, |a, b| {
                     a.cost <= b.cost
                         && a.values.stress <= b.values.stress

@@ -216,10 +216,8 @@ impl<'r> Beside<'r> {
     /// The stress where amplifier and divider hold beside a reference.
     fn holds(&self, bias: &Bias, divider: Divider) -> Option<f64> {
         let network = Network { line: &self.divider_line.at_rail, divider, pot: self.pot };
-        WhileHolding::over(|t| {
-            input_checks(self.amplifier, bias, &network, self.aim, self.rail, t)
-        })
-        .ok()
+        WhileHolding::over(|t| input_checks(self.amplifier, bias, &network, self.aim, self.rail, t))
+            .ok()
     }
 
     /// The values of RF or RX beside RI that may keep the output where it is asked: necessary

@@ -24,7 +24,8 @@ fn worth(
     for (part, pieces) in picked.iter().flat_map(|o| &o.pieces) {
         *taken.entry(*part).or_default() += *pieces as f64;
     }
-    let reaches = taken.iter().all(|(part, pieces)| *pieces <= stock.get(part).copied().unwrap_or(0.0));
+    let reaches =
+        taken.iter().all(|(part, pieces)| *pieces <= stock.get(part).copied().unwrap_or(0.0));
     let parts: BTreeSet<u32> = picked.iter().flat_map(|o| o.parts.clone()).collect();
     let left_out = picks.iter().filter(|pick| pick.is_none()).count();
     reaches.then(|| (left_out, parts.len(), picked.iter().map(|o| o.cost).sum()))
@@ -106,11 +107,10 @@ fn one_part_for_all_comes_before_a_cheaper_one_for_each() {
 
 #[test]
 fn two_rails_do_not_both_get_the_same_hundred_pieces() {
-    let counted = |part: u32, cost: f64| CoverOption { pieces: vec![(part, 60)], ..one(part, cost) };
-    let designs = vec![
-        vec![counted(0, 1.0), counted(1, 5.0)],
-        vec![counted(0, 1.0), counted(1, 2.0)],
-    ];
+    let counted =
+        |part: u32, cost: f64| CoverOption { pieces: vec![(part, 60)], ..one(part, cost) };
+    let designs =
+        vec![vec![counted(0, 1.0), counted(1, 5.0)], vec![counted(0, 1.0), counted(1, 2.0)]];
     let stock = BTreeMap::from([(0, 100.0), (1, 100.0)]);
     let found = cover(&designs, &stock);
     assert_eq!((found.parts, found.cost), (vec![0, 1], 3.0));

@@ -235,17 +235,30 @@ impl Run<'_, '_> {
         let hit = watched("looking for replacements", progress, |tell| {
             affected(desks, entries, &gone, tell)
         });
-        let all = watched("looking for the fewest parts", progress, |_| {
-            cover_all(desks, entries, &hit)
-        });
+        let all =
+            watched("looking for the fewest parts", progress, |_| cover_all(desks, entries, &hit));
         let subjects: Vec<Subject<'_, '_>> =
             hit.iter().filter_map(|a| self.bench.subject(a.entry, desks)).collect();
+        // Of each sheet once.
+        let mut reasons: BTreeMap<usize, String> = BTreeMap::new();
         let told = |(hit, subject): (&Affected, &Subject<'_, '_>)| {
-            let why = if hit.found.list.is_empty() { self.why_nothing(subject)? } else { String::new() };
+            let why = match (hit.found.list.is_empty(), self.bench.entries.get(hit.entry)) {
+                (true, Some(entry)) => match reasons.get(&entry.desk) {
+                    Some(why) => why.clone(),
+                    None => {
+                        let why = self.why_nothing(subject)?;
+                        reasons.insert(entry.desk, why.clone());
+                        why
+                    }
+                },
+                _ => String::new(),
+            };
             Ok(AffectedDesign::new(subject, &gone, hit, self.arguments.top, why))
         };
         let designs: Result<Vec<AffectedDesign>, Fault> =
-            watched("looking for reasons", progress, |_| hit.iter().zip(&subjects).map(told).collect());
+            watched("looking for reasons", progress, |_| {
+                hit.iter().zip(&subjects).map(told).collect()
+            });
         let mut designs = designs?;
         // A stable sort: otherwise in the order of files.
         designs.sort_by_key(|design| !design.is_lost());
@@ -308,7 +321,8 @@ impl Run<'_, '_> {
                 unknown = true;
                 let mend =
                     nearest.map(|name| format!("; did you mean `{name}`?")).unwrap_or_default();
-                self.screen.say(&format!("error: no catalog or design holds a part `{text}`{mend}"));
+                self.screen
+                    .say(&format!("error: no catalog or design holds a part `{text}`{mend}"));
             }
         }
         if unknown { Err(Fault::Told) } else { Ok(()) }
@@ -323,7 +337,9 @@ impl Run<'_, '_> {
         let problem = rows.problem();
         let first = select::ranking::shortlist(&problem, 1, &select::ranking::NO_SPREAD);
         if !first.map_err(Fault::Search)?.is_empty() {
-            return Ok("A new design from its sheet would do: see `railwright shortlist`.".to_owned());
+            return Ok(
+                "A new design from its sheet would do: see `railwright shortlist`.".to_owned()
+            );
         }
         let market = ShopMarket { sheet: &sheet, shop: &self.designs.shop, only: None };
         let reasons = why_nothing(&market, &problem).map_err(Fault::Search)?;

@@ -204,10 +204,7 @@ fn named(
         several => {
             let names: Vec<String> =
                 several.iter().map(|entry| format!("`{}`", full_name(entry))).collect();
-            Err(format!(
-                "several makers have a part `{name}`: name one of {}",
-                names.join(", ")
-            ))
+            Err(format!("several makers have a part `{name}`: name one of {}", names.join(", ")))
         }
     }
 }

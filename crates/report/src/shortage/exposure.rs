@@ -89,7 +89,8 @@ pub fn table(of: &Exposure) -> Table {
         .iter()
         .map(|part| {
             let without = part.designs.iter().filter(|d| d.replacements == 0);
-            let hit: Vec<&str> = without.map(|d| super::tables::within(&d.file, &of.folder)).collect();
+            let hit: Vec<&str> =
+                without.map(|d| super::tables::within(&d.file, &of.folder)).collect();
             vec![
                 part.part.clone().into(),
                 part.catalog.into(),

@@ -44,8 +44,10 @@ pub const PICKS: [Column; 6] = [
 ];
 
 /// The columns of files at fault.
-pub const BROKEN: [Column; 2] =
-    [Column::text("file", "a design file that is at fault"), Column::text("fault", "what is wrong")];
+pub const BROKEN: [Column; 2] = [
+    Column::text("file", "a design file that is at fault"),
+    Column::text("fault", "what is wrong"),
+];
 
 /// The file of a design as seen from the folder.
 pub(super) fn within<'f>(file: &'f str, folder: &str) -> &'f str {
@@ -105,7 +107,12 @@ pub fn cover(of: &Shortage) -> Table {
     let parts = of.cover.iter().flat_map(|cover| &cover.parts);
     table.rows = parts
         .map(|part| {
-            vec![part.part.clone().into(), part.file.into(), part.designs.into(), part.pieces.into()]
+            vec![
+                part.part.clone().into(),
+                part.file.into(),
+                part.designs.into(),
+                part.pieces.into(),
+            ]
         })
         .collect();
     table

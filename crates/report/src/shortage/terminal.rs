@@ -5,7 +5,7 @@ use super::{Broken, CoverFound, Shortage};
 use crate::look::Look;
 use crate::substitute::tables::{same_numbers, troubles};
 use crate::substitute::terminal::how_far;
-use crate::table::{Cell, screen};
+use crate::table::{Cell, Table, screen};
 
 /// The whole text.
 pub fn shortage(of: &Shortage, look: &Look) -> String {
@@ -18,21 +18,27 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
         hit => format!("{hit} {}; {lost} of them can't be saved.", uses(hit)),
     };
     text += &look.paragraph(&found, 0, 2);
+    // A reason that several designs of a sheet share is told once.
+    let mut told: Vec<(&str, &str)> = Vec::new();
     for design in of.designs.iter().filter(|design| design.is_lost()) {
         text.push('\n');
-        let heading = format!("Can't be saved: {}", within(&design.file, &of.folder));
+        let heading = format!("Can't be saved: {}", short(&design.file, of));
         text += &look.heading(&heading);
         text.push('\n');
         let looked = format!("{}; looked at: {}.", design.name, how_far(&design.looked));
         text += &look.paragraph(&looked, 2, 4);
+        if let Some((_, like)) = told.iter().find(|(why, _)| *why == design.why_nothing) {
+            text += &look.paragraph(&format!("For the same reason as {like}."), 2, 4);
+            continue;
+        }
+        told.push((&design.why_nothing, short(&design.file, of)));
         for line in design.why_nothing.lines() {
             text += format!("  {}", look.text(line)).trim_end();
             text.push('\n');
         }
     }
     if hit > lost {
-        let mut table = designs(of);
-        let place = table.place("goes in").unwrap_or(0);
+        let mut table = shortened(designs(of), &["goes in"]);
         let rank = table.place("rank").unwrap_or(0);
         table.rows.retain(|row| row.get(rank).is_some_and(|cell| *cell != Cell::Blank));
         // A design is named once, at its first replacement.
@@ -45,17 +51,12 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
                     last = design.clone();
                 }
             }
-            if let Some(Cell::Text(name)) = row.get_mut(place)
-                && let Some((_, short)) = name.split_once('/')
-                && !name.contains(" + ")
-            {
-                *name = short.to_owned();
-            }
         }
         text.push('\n');
         text += &look.heading("Best replacements");
         text.push('\n');
-        let shown = ["design", "goes in", "also changes", "board", "cost", "stock", "weeks", "status"];
+        let shown =
+            ["design", "goes in", "also changes", "board", "cost", "stock", "weeks", "status"];
         text += &screen::table(&table, &shown, look);
         text += &remarks(of, look);
     }
@@ -68,7 +69,7 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
         text += &screen::table(&cover(of), &["new part", "designs", "pieces"], look);
         text.push('\n');
         let shown = ["design", "takes", "also changes", "board", "cost"];
-        text += &screen::table(&picks(of), &shown, look);
+        text += &screen::table(&shortened(picks(of), &["takes"]), &shown, look);
     }
     if !of.broken.is_empty() {
         text.push('\n');
@@ -77,6 +78,33 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
         text += &screen::table(&broken(&of.broken), &BROKEN.map(|c| c.heading), look);
     }
     text
+}
+
+/// A design's file as seen from the folder, without its ending, which all have.
+fn short<'f>(file: &'f str, of: &Shortage) -> &'f str {
+    let file = within(file, &of.folder);
+    file.strip_suffix(".toml").unwrap_or(file)
+}
+
+/// Leaves the ending of design files out, and of a maker's part the maker.
+fn shortened(mut table: Table, names: &[&str]) -> Table {
+    let files = table.place("design");
+    let names: Vec<usize> = names.iter().filter_map(|name| table.place(name)).collect();
+    for row in &mut table.rows {
+        if let Some(Cell::Text(file)) = files.and_then(|place| row.get_mut(place))
+            && let Some(stem) = file.strip_suffix(".toml")
+        {
+            *file = stem.to_owned();
+        }
+        for place in &names {
+            if let Some(Cell::Text(name)) = row.get_mut(*place) {
+                let parts =
+                    name.split(" + ").map(|n| n.split_once('/').map_or(n, |(_, part)| part));
+                *name = parts.collect::<Vec<_>>().join(" + ");
+            }
+        }
+    }
+    table
 }
 
 fn uses(designs: usize) -> &'static str {
@@ -113,7 +141,7 @@ fn in_words(found: &CoverFound, of: &Shortage) -> String {
     let left_out = match found.left_out.as_slice() {
         [] => String::new(),
         files => {
-            let files: Vec<&str> = files.iter().map(|file| within(file, &of.folder)).collect();
+            let files: Vec<&str> = files.iter().map(|file| short(file, of)).collect();
             format!(" The joint stock does not reach for {}.", files.join(", "))
         }
     };

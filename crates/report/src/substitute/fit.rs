@@ -74,8 +74,9 @@ impl Fit {
             (binding(&proof.findings, Kind::Damage), binding(&proof.findings, Kind::Function));
         let verdicts = conditions(parts, sheet, sheet.boards);
         // Of these the proof itself depends; the others are the sheet's wishes.
-        let bears =
-            |rule| matches!(rule, Rule::Footprint | Rule::Blanks | Rule::Polarity | Rule::Resistance);
+        let bears = |rule| {
+            matches!(rule, Rule::Footprint | Rule::Blanks | Rule::Polarity | Rule::Resistance)
+        };
         let fails = || verdicts.iter().filter(|v| !v.holds);
         let holds = proof.findings.iter().all(circuit::check::Finding::holds)
             && fails().all(|v| !bears(v.rule));

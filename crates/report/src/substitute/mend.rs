@@ -240,7 +240,11 @@ fn changed_values(was: &Parts<'_>, is: &Parts<'_>, is_adjustable: bool) -> Vec<V
     ]
     .into_iter()
     .filter(|(_, was, is)| quantity::digits::compare(*was, *is).is_ne())
-    .map(|(resistor, was, is)| ValueChange { key: resistor.key(), was: Figure(was), is: Figure(is) })
+    .map(|(resistor, was, is)| ValueChange {
+        key: resistor.key(),
+        was: Figure(was),
+        is: Figure(is),
+    })
     .collect()
 }
 

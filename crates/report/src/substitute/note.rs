@@ -34,9 +34,10 @@ pub fn note(of: &Substitution, mend: &Mend) -> String {
     );
     let mut moved = checks(of.before.as_ref(), &mend.after);
     moved.name = "Checks";
-    moved.about = "Every check of the rail sheet, as built and with the change: the share of what is \
+    moved.about =
+        "Every check of the rail sheet, as built and with the change: the share of what is \
                    allowed that is used. Asked and allowed are in the unit beside the name."
-        .to_owned();
+            .to_owned();
     let mut bench = readings(&mend.after.bench);
     bench.about = "What the board should read, with every part at the worst end of its tolerance. A \
                    reading outside is a fault of the board, of a part, or of a figure in the catalogs."

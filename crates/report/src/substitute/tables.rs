@@ -26,7 +26,10 @@ pub const REPLACEMENTS: [Column; 22] = [
     Column::text("level", "nothing, values or parts: what changes beside the replacement"),
     Column::whole("further parts", "parts that change beside the replacement"),
     Column::whole("other packages", "changed parts not known to have the package of before"),
-    Column::whole("other pinouts", "changed parts of the same package, pinout not known to be the same"),
+    Column::whole(
+        "other pinouts",
+        "changed parts of the same package, pinout not known to be the same",
+    ),
     Column::whole("values", "resistors of another value"),
     Column::number("score", "", "cost, loss and stress with the weights of the sheet"),
     Column::share("efficiency", "with nominal parts at the nominal feed"),

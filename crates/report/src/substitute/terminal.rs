@@ -2,9 +2,7 @@
 
 use super::fit::{Fit, row_holds};
 use super::mend::Mend;
-use super::tables::{
-    also_changes, changes, checks, figures, narrow, same_numbers, troubles,
-};
+use super::tables::{also_changes, changes, checks, figures, narrow, same_numbers, troubles};
 use super::{Looked, Substitution, slot_words};
 use crate::look::Look;
 use crate::shortlist::CheckRow;
@@ -60,7 +58,8 @@ fn asked(of: &Substitution) -> String {
         [] => String::new(),
         set => format!(", with --set {}", set.join(", ")),
     };
-    let boards = if of.boards == 1 { "1 board".to_owned() } else { format!("{} boards", of.boards) };
+    let boards =
+        if of.boards == 1 { "1 board".to_owned() } else { format!("{} boards", of.boards) };
     format!("In place of {}; {boards}, rail sheet {}{set}", gone.join(", "), of.sheet)
 }
 
@@ -100,10 +99,9 @@ fn nothing(of: &Substitution) -> String {
     let negation = if of.with.is_some() { "can't" } else { "can" };
     match of.looked.everything {
         true => format!("{what} {negation} go in, whatever else changes."),
-        false => format!(
-            "{what} {negation} go in, as far as it was looked: {}.",
-            how_far(&of.looked)
-        ),
+        false => {
+            format!("{what} {negation} go in, as far as it was looked: {}.", how_far(&of.looked))
+        }
     }
 }
 
@@ -125,7 +123,9 @@ fn list(of: &Substitution, look: &Look) -> String {
     let shown = of.replacements.len();
     let looked = how_far(&of.looked);
     let how = match of.looked.found.checked_sub(shown) {
-        Some(more @ 1..) => format!("{shown} shown of {} found; looked at: {looked}.", shown + more),
+        Some(more @ 1..) => {
+            format!("{shown} shown of {} found; looked at: {looked}.", shown + more)
+        }
         _ => format!("{shown} found; looked at: {looked}."),
     };
     text += &look.paragraph(&how, 0, 2);

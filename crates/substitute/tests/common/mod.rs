@@ -113,7 +113,8 @@ impl Scene {
             Slot::ALL.into_iter().any(|s| {
                 self.gone[s as usize]
                     && same_catalog(s, slot)
-                    && self.design.places[s as usize].is_some_and(|p| name(&problem, s, p) == (maker, part))
+                    && self.design.places[s as usize]
+                        .is_some_and(|p| name(&problem, s, p) == (maker, part))
             })
         };
         (0..rows)
@@ -141,7 +142,11 @@ impl Scene {
     }
 
     fn built<'p>(&self, problem: &Problem<'p>) -> Built<'p> {
-        fn at<'p, F>(rows: &[Part<'p, F>], place: Option<usize>, gone: bool) -> Option<Part<'p, F>> {
+        fn at<'p, F>(
+            rows: &[Part<'p, F>],
+            place: Option<usize>,
+            gone: bool,
+        ) -> Option<Part<'p, F>> {
             place.filter(|_| !gone).and_then(|p| rows.get(p)).copied()
         }
         let place = |slot: Slot| self.design.places[slot as usize];
@@ -156,9 +161,7 @@ impl Scene {
                 gone(Slot::DividerLine),
             ),
             pot: at(&problem.pots, place(Slot::Pot), gone(Slot::Pot)),
-            pass: place(Slot::Pass)
-                .filter(|_| !gone(Slot::Pass))
-                .map(|p| problem.transistors[p]),
+            pass: place(Slot::Pass).filter(|_| !gone(Slot::Pass)).map(|p| problem.transistors[p]),
             heatsink: match place(Slot::Heatsink) {
                 None => BuiltSink::None,
                 Some(_) if gone(Slot::Heatsink) => BuiltSink::CannotStay,
