@@ -1,6 +1,6 @@
 //! All designs below a folder, read with their sheets; files at fault do not stop the others.
 
-use crate::designs::{DesignRead, Designs};
+use crate::desk::{Desk, OnDesk};
 use notice::{Notice, Place, Severity};
 use report::shortage::Broken;
 use std::path::{Path, PathBuf};
@@ -9,7 +9,7 @@ use std::path::{Path, PathBuf};
 #[derive(Default)]
 pub(crate) struct Folder {
     /// Those that could be read, in the order of their paths.
-    pub(crate) designs: Vec<DesignRead>,
+    pub(crate) designs: Vec<OnDesk>,
     /// Those that could not.
     pub(crate) broken: Vec<Broken>,
 }
@@ -18,7 +18,7 @@ impl Folder {
     /// Reads every design below a folder. None with a notice where there is no such folder.
     pub(crate) fn read(
         folder: &Path,
-        designs: &mut Designs,
+        desk: &mut Desk<'_>,
         notices: &mut Vec<Notice>,
     ) -> Option<Self> {
         let mut paths = Vec::new();
@@ -32,7 +32,7 @@ impl Folder {
         let mut read = Self::default();
         for path in paths.iter().filter(|path| may_be_design(path)) {
             let mut found = Vec::new();
-            match designs.read(path, &mut found) {
+            match desk.read(path, &mut found) {
                 Ok(design) => read.designs.push(design),
                 Err(_) => read
                     .broken

@@ -3,8 +3,6 @@
 mod arguments;
 mod command;
 mod desk;
-mod designs;
-mod endings;
 mod files;
 mod folder;
 mod load;

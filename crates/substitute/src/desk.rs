@@ -201,7 +201,13 @@ impl<'a> Desk<'a> {
                 Choice::Without => None,
                 Choice::Row(place) => rows.heatsinks.get(place as usize).map(|row| {
                     let (catalog, found) = (&shop.heatsinks, Found::Row(*row));
-                    DesignPart::<Sink> { found, catalog, shop, inline: None }
+                    DesignPart::<Sink> {
+                        found,
+                        catalog,
+                        shop,
+                        inline: None,
+                        is_named_in_slots: true,
+                    }
                 }),
             },
             rz_ohm,
@@ -263,7 +269,13 @@ fn put<'a, T>(
 ) -> DesignPart<'a, T> {
     match choice {
         Choice::Row(place) => match rows.get(place as usize) {
-            Some(row) => DesignPart { found: Found::Row(row), catalog, shop, inline: None },
+            Some(row) => DesignPart {
+                found: Found::Row(row),
+                catalog,
+                shop,
+                inline: None,
+                is_named_in_slots: true,
+            },
             None => part,
         },
         Choice::Kept | Choice::Without => part,

@@ -3,9 +3,8 @@
 use super::substitute::at_least_one;
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing};
-use crate::designs::{DesignRead, Designs};
-use crate::endings::by_ending;
-use crate::files::{check, write_whole};
+use crate::desk::{Desk, OnDesk};
+use crate::files::{Format, Target, check, write_whole};
 use crate::folder::{Folder, faults};
 use crate::progress::watched;
 use crate::screen::Screen;
@@ -26,7 +25,7 @@ use report::{markdown, table, workbook};
 use sheet::{NamedPart, Sheet};
 use std::collections::BTreeMap;
 use std::path::PathBuf;
-use substitute::desk::{Desk, Names};
+use substitute::desk::{Desk as SheetDesk, Names};
 use substitute::shortage::{Affected, Entry, affected, cover_all, exposed};
 
 /// Replacements told of each design where nothing else is asked for.
@@ -64,7 +63,7 @@ pub(crate) struct Arguments {
     set: Vec<String>,
     /// Write a file as well: .csv, .xlsx, .json or .md
     #[arg(long, value_name = "FILE", value_parser = target)]
-    out: Vec<(PathBuf, Format)>,
+    out: Vec<Target>,
     /// Replace files that are there already
     #[arg(long)]
     overwrite: bool,
@@ -80,45 +79,33 @@ Examples, on the sample catalogs:
 Exit status: 0 where every design can be mended, 1 where one can't, 2 where a design, a sheet, a
 catalog or the command line is at fault; other designs are looked at all the same.";
 
-/// A format that a shortage can be written in.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-enum Format {
-    Json,
-    Csv,
-    Workbook,
-    Markdown,
-}
+/// The formats that are written.
+const FORMATS: [Format; 4] = [Format::Json, Format::Csv, Format::Xlsx, Format::Md];
 
-fn target(text: &str) -> Result<(PathBuf, Format), String> {
-    let known = [
-        ("json", Format::Json),
-        ("csv", Format::Csv),
-        ("xlsx", Format::Workbook),
-        ("md", Format::Markdown),
-    ];
-    by_ending(text, &known)
+fn target(text: &str) -> Result<Target, String> {
+    Target::read(text, &FORMATS)
 }
 
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
-    check(arguments.out.iter().map(|(path, _)| path.as_path()), arguments.overwrite)?;
+    check(arguments.out.iter().map(|target| target.path.as_path()), arguments.overwrite)?;
     let mut notices = Vec::new();
-    let read = Designs::read_shop(&arguments.catalogs, &arguments.set, None, &mut notices)
-        .and_then(|mut designs| {
-            let folder = Folder::read(&arguments.designs, &mut designs, &mut notices)?;
-            Some((designs, folder))
+    let read =
+        Desk::new(&arguments.catalogs, None, &arguments.set, &mut notices).and_then(|mut desk| {
+            let folder = Folder::read(&arguments.designs, &mut desk, &mut notices)?;
+            Some((desk, folder))
         });
     let Some((designs, folder)) = read else {
         screen.tell(&notices, Warnings::FewOfAKind);
         return Err(Fault::Told);
     };
-    let sheets = Sheets::of(&folder.designs);
+    let sheets = Sheets::of(&folder.designs, &designs);
     let mut broken = folder.broken;
     let desks = sheets.desks(&designs, arguments.catalogs.skip_broken_rows, &mut notices);
     let bench = Bench::set(&designs, &folder.designs, &sheets, &desks, &mut broken, &mut notices);
     broken.sort_by(|a, b| a.file.cmp(&b.file));
     screen.tell(&notices, Warnings::FewOfAKind);
-    let desks: Vec<Desk<'_>> = desks.into_iter().map(|(desk, _)| desk).collect();
+    let desks: Vec<SheetDesk<'_>> = desks.into_iter().map(|(desk, _)| desk).collect();
     let run = Run { arguments, designs: &designs, bench: &bench, desks: &desks, broken, screen };
     if arguments.exposed { run.exposed() } else { run.shortage() }
 }
@@ -126,22 +113,24 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
 /// The sheets that designs name, each for every number of boards that a design builds.
 struct Sheets {
     sheets: Vec<Sheet>,
-    /// Of each design the place of its sheet.
-    of_design: Vec<usize>,
+    /// Of each design the place of its sheet, and its name.
+    of_design: Vec<(usize, String)>,
 }
 
 impl Sheets {
-    fn of(designs: &[DesignRead]) -> Self {
+    fn of(designs: &[OnDesk], desk: &Desk<'_>) -> Self {
         let mut sheets = Vec::new();
         let mut places: BTreeMap<(&str, u64), usize> = BTreeMap::new();
         let mut of_design = Vec::new();
         for read in designs {
-            let boards = read.design.boards.unwrap_or(read.sheet.sheet.boards);
-            let place = *places.entry((&read.sheet.name, boards)).or_insert_with(|| {
-                sheets.push(Sheet { boards, ..read.sheet.sheet.clone() });
+            let Some(evidence) = desk.evidence(read) else { continue };
+            let (name, sheet) = (evidence.sheet_file.0, evidence.sheet);
+            let boards = read.design.boards.unwrap_or(sheet.boards);
+            let place = *places.entry((name, boards)).or_insert_with(|| {
+                sheets.push(Sheet { boards, ..sheet.clone() });
                 sheets.len() - 1
             });
-            of_design.push(place);
+            of_design.push((place, name.to_owned()));
         }
         Self { sheets, of_design }
     }
@@ -149,10 +138,10 @@ impl Sheets {
     /// What may be chosen for each sheet, with the faults that were found in doing so.
     fn desks<'a>(
         &'a self,
-        designs: &'a Designs,
+        designs: &'a Desk<'_>,
         skip_broken_rows: bool,
         notices: &mut Vec<Notice>,
-    ) -> Vec<(Desk<'a>, Vec<String>)> {
+    ) -> Vec<(SheetDesk<'a>, Vec<String>)> {
         let desk = |sheet: &'a Sheet| {
             let mut found = Vec::new();
             let rows = eligible(sheet, &designs.shop, skip_broken_rows, &mut found);
@@ -162,7 +151,7 @@ impl Sheets {
                     notices.push(notice);
                 }
             }
-            (Desk::new(rows), at_fault)
+            (SheetDesk::new(rows), at_fault)
         };
         self.sheets.iter().map(desk).collect()
     }
@@ -170,28 +159,28 @@ impl Sheets {
 
 /// The designs whose parts were found.
 struct Bench<'a> {
-    designs: Vec<&'a DesignRead>,
+    designs: Vec<(&'a OnDesk, &'a str)>,
     entries: Vec<Entry<'a>>,
 }
 
 impl<'a> Bench<'a> {
     fn set(
-        designs: &'a Designs,
-        read: &'a [DesignRead],
+        designs: &'a Desk<'_>,
+        read: &'a [OnDesk],
         sheets: &'a Sheets,
-        desks: &[(Desk<'a>, Vec<String>)],
+        desks: &[(SheetDesk<'a>, Vec<String>)],
         broken: &mut Vec<Broken>,
         notices: &mut Vec<Notice>,
     ) -> Self {
         let mut bench = Self { designs: Vec::new(), entries: Vec::new() };
-        for (read, desk) in read.iter().zip(&sheets.of_design) {
+        for (read, (desk, sheet_name)) in read.iter().zip(&sheets.of_design) {
             let mut found = Vec::new();
             let at_fault = desks.get(*desk).map(|(_, faults)| faults.clone()).unwrap_or_default();
-            let rail = &read.sheet.sheet.rail;
-            let parts = Parts::find(&read.design, &designs.shop, rail, &mut found);
+            let Some(sheet) = sheets.sheets.get(*desk) else { continue };
+            let parts = Parts::find(&read.design, &designs.shop, &sheet.rail, &mut found);
             match parts.filter(|_| at_fault.is_empty() && !has_errors(&found)) {
                 Some(parts) => {
-                    bench.designs.push(read);
+                    bench.designs.push((read, sheet_name));
                     bench.entries.push(Entry { desk: *desk, parts });
                 }
                 None => {
@@ -204,12 +193,12 @@ impl<'a> Bench<'a> {
         bench
     }
 
-    fn subject<'s>(&'s self, at: usize, desks: &'s [Desk<'a>]) -> Option<Subject<'s, 'a>> {
-        let (read, entry) = (self.designs.get(at)?, self.entries.get(at)?);
+    fn subject<'s>(&'s self, at: usize, desks: &'s [SheetDesk<'a>]) -> Option<Subject<'s, 'a>> {
+        let ((read, sheet_file), entry) = (self.designs.get(at)?, self.entries.get(at)?);
         Some(Subject {
             file: &read.design.file,
             name: &read.design.name,
-            sheet_file: &read.sheet.name,
+            sheet_file,
             parts: &entry.parts,
             desk: desks.get(entry.desk)?,
         })
@@ -219,9 +208,9 @@ impl<'a> Bench<'a> {
 /// Everything that a run works with.
 struct Run<'r, 'a> {
     arguments: &'r Arguments,
-    designs: &'a Designs,
+    designs: &'r Desk<'r>,
     bench: &'r Bench<'a>,
-    desks: &'r [Desk<'a>],
+    desks: &'r [SheetDesk<'a>],
     broken: Vec<Broken>,
     screen: &'r Screen,
 }
@@ -269,7 +258,7 @@ impl Run<'_, '_> {
             folder: self.arguments.designs.display().to_string(),
             gone: gone.0,
             currency: self.designs.shop_file.currency.clone(),
-            set: self.designs.set.clone(),
+            set: self.arguments.set.clone(),
             catalogs_sha256: self.designs.hashes(),
             read: self.bench.designs.len(),
             broken: self.broken,
@@ -289,11 +278,11 @@ impl Run<'_, '_> {
             exposed(self.desks, &self.bench.entries, tell)
         });
         let files: Vec<&str> =
-            self.bench.designs.iter().map(|read| read.design.file.as_str()).collect();
+            self.bench.designs.iter().map(|(read, _)| read.design.file.as_str()).collect();
         let told = Exposure {
             format: exposure::FORMAT,
             folder: self.arguments.designs.display().to_string(),
-            set: self.designs.set.clone(),
+            set: self.arguments.set.clone(),
             catalogs_sha256: self.designs.hashes(),
             read: self.bench.designs.len(),
             broken: self.broken,
@@ -382,12 +371,13 @@ fn write<T: serde::Serialize>(
     screen: &Screen,
 ) -> Result<(), Fault> {
     let defect = |what: &dyn std::fmt::Display| Fault::Defect(what.to_string());
-    for (path, format) in &arguments.out {
-        let bytes = match format {
+    for target in &arguments.out {
+        let path = &target.path;
+        let bytes = match target.format {
             Format::Json => json(told).map_err(|e| defect(&e))?,
             Format::Csv => table::csv::table(first).map_err(|e| defect(&e))?,
-            Format::Workbook => workbook::document(document).map_err(|e| defect(&e))?,
-            Format::Markdown => markdown::document(document).into_bytes(),
+            Format::Xlsx => workbook::document(document).map_err(|e| defect(&e))?,
+            _ => markdown::document(document).into_bytes(),
         };
         write_whole(path, &bytes, arguments.overwrite)?;
         screen.mention(&format!("wrote {}", path.display()));

@@ -2,9 +2,8 @@
 
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing};
-use crate::designs::Designs;
-use crate::endings::by_ending;
-use crate::files::{check, write_whole};
+use crate::desk::Desk;
+use crate::files::{Format, Target, check, write_whole};
 use crate::progress::watched;
 use crate::screen::Screen;
 use circuit::slot::Slot;
@@ -19,7 +18,7 @@ use report::substitute::{Run, Subject, Substitution, json, note, tables, termina
 use report::{table, workbook};
 use sheet::Sheet;
 use std::path::PathBuf;
-use substitute::desk::{Desk, Names};
+use substitute::desk::{Desk as SheetDesk, Names};
 use substitute::replace::{Until, replacements};
 
 /// Rows of a list where nothing else is asked for.
@@ -59,7 +58,7 @@ pub(crate) struct Arguments {
     set: Vec<String>,
     /// Write a file as well: the list as .csv, .xlsx or .json, a change note as .md
     #[arg(long, value_name = "FILE", value_parser = target)]
-    out: Vec<(PathBuf, Format)>,
+    out: Vec<Target>,
     /// Replace files that are there already
     #[arg(long)]
     overwrite: bool,
@@ -77,23 +76,11 @@ Examples, on the sample catalogs:
 Exit status: 0 where something can go in, 1 where nothing can, 2 where the design, its sheet, a
 catalog or the command line is at fault.";
 
-/// A format that a substitution can be written in.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-enum Format {
-    Json,
-    Csv,
-    Workbook,
-    Note,
-}
+/// The formats that are written.
+const FORMATS: [Format; 4] = [Format::Json, Format::Csv, Format::Xlsx, Format::Md];
 
-fn target(text: &str) -> Result<(PathBuf, Format), String> {
-    let known = [
-        ("json", Format::Json),
-        ("csv", Format::Csv),
-        ("xlsx", Format::Workbook),
-        ("md", Format::Note),
-    ];
-    by_ending(text, &known)
+fn target(text: &str) -> Result<Target, String> {
+    Target::read(text, &FORMATS)
 }
 
 /// A whole number from 1 on.
@@ -106,41 +93,37 @@ pub(super) fn at_least_one(text: &str) -> Result<usize, String> {
 
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
-    check(arguments.out.iter().map(|(path, _)| path.as_path()), arguments.overwrite)?;
+    check(arguments.out.iter().map(|target| target.path.as_path()), arguments.overwrite)?;
     let mut notices = Vec::new();
-    let designs = Designs::read_shop(
-        &arguments.catalogs,
-        &arguments.set,
-        arguments.sheet.as_deref(),
-        &mut notices,
-    );
-    let read = designs.and_then(|mut designs| {
-        let read = designs.read(&arguments.design, &mut notices).ok()?;
-        Some((designs, read))
+    let Arguments { catalogs, sheet, set, .. } = arguments;
+    let read = Desk::new(catalogs, sheet.as_deref(), set, &mut notices).and_then(|mut desk| {
+        let read = desk.read(&arguments.design, &mut notices).ok()?;
+        Some((desk, read))
     });
-    let Some((designs, read)) = read else {
+    let found = read.as_ref().and_then(|(desk, read)| Some((desk, read, desk.evidence(read)?)));
+    let Some((designs, read, evidence)) = found else {
         screen.tell(&notices, Warnings::FewOfAKind);
         return Err(Fault::Told);
     };
-    let mut sheet = read.sheet.sheet.clone();
-    sheet.boards = read.design.boards.unwrap_or(sheet.boards);
-    let rows = eligible(&sheet, &designs.shop, arguments.catalogs.skip_broken_rows, &mut notices);
+    let boards = read.design.boards.unwrap_or(evidence.sheet.boards);
+    let sheet = Sheet { boards, ..evidence.sheet.clone() };
+    let rows = eligible(&sheet, &designs.shop, catalogs.skip_broken_rows, &mut notices);
     let parts = Parts::find(&read.design, &designs.shop, &sheet.rail, &mut notices);
     screen.tell(&notices, Warnings::FewOfAKind);
     let Some(parts) = parts.filter(|_| !has_errors(&notices)) else { return Err(Fault::Told) };
 
     let gone = Names(vec![arguments.gone.clone()]);
-    let with = named(arguments, &designs, &parts, &gone).map_err(|told| {
+    let with = named(arguments, designs, &parts, &gone).map_err(|told| {
         screen.say(&format!("error: {told}"));
         Fault::Told
     })?;
-    let desk = Desk::new(rows);
+    let desk = SheetDesk::new(rows);
     let with_names = with.as_ref().map(|entry| Names(vec![full_name(entry)]));
     let case = desk.case(&parts, &gone, with_names.as_ref());
     if let Some(entry) = &with
         && Slot::ALL.into_iter().any(|slot| case.is_gone(slot) && case.places(slot).is_empty())
     {
-        return barred(entry, &desk, &designs, screen);
+        return barred(entry, &desk, designs, screen);
     }
     let found = watched("looking for replacements", screen.shows_progress(), |_| {
         replacements(&case, Until::Found(if with.is_some() { 1 } else { arguments.top }))
@@ -149,11 +132,11 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     let subject = Subject {
         file: &read.design.file,
         name: &read.design.name,
-        sheet_file: &read.sheet.name,
+        sheet_file: evidence.sheet_file.0,
         parts: &parts,
         desk: &desk,
     };
-    let run = Run { set: designs.set.clone(), catalogs_sha256: designs.hashes() };
+    let run = Run { set: set.clone(), catalogs_sha256: designs.hashes() };
     let told = Substitution::new(
         &subject,
         (&gone, with_names.as_ref()),
@@ -173,7 +156,7 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
 /// A sentence on what is wrong with the names, that of the part that is gone among them.
 fn named(
     arguments: &Arguments,
-    designs: &Designs,
+    designs: &Desk<'_>,
     parts: &Parts<'_>,
     gone: &Names,
 ) -> Result<Option<Entry>, String> {
@@ -219,8 +202,8 @@ fn full_name(entry: &Entry) -> String {
 /// A part that may not be chosen: why not.
 fn barred(
     entry: &Entry,
-    desk: &Desk<'_>,
-    designs: &Designs,
+    desk: &SheetDesk<'_>,
+    designs: &Desk<'_>,
     screen: &Screen,
 ) -> Result<Answer, Fault> {
     let sheet: &Sheet = desk.eligible.sheet;
@@ -234,16 +217,15 @@ fn barred(
 fn write(arguments: &Arguments, told: &Substitution, screen: &Screen) -> Result<bool, Fault> {
     let defect = |what: &dyn std::fmt::Display| Fault::Defect(what.to_string());
     let mut all = true;
-    for (path, format) in &arguments.out {
-        let bytes = match format {
+    for target in &arguments.out {
+        let path = &target.path;
+        let bytes = match target.format {
             Format::Json => json(told).map_err(|e| defect(&e))?,
             Format::Csv => {
                 table::csv::table(&tables::replacements(told)).map_err(|e| defect(&e))?
             }
-            Format::Workbook => {
-                workbook::document(&tables::document(told)).map_err(|e| defect(&e))?
-            }
-            Format::Note => match told.replacements.get(arguments.pick - 1) {
+            Format::Xlsx => workbook::document(&tables::document(told)).map_err(|e| defect(&e))?,
+            Format::Md => match told.replacements.get(arguments.pick - 1) {
                 Some(mend) => note::note(told, mend).into_bytes(),
                 None => {
                     let (rows, pick) = (told.replacements.len(), arguments.pick);
