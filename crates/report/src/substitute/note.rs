@@ -3,7 +3,7 @@
 
 use super::Substitution;
 use super::mend::Mend;
-use super::tables::{changes, checks, figures, goes_in, readings, same_numbers, troubles};
+use super::tables::{ROOM, changes, checks, figures, goes_in, readings, same_numbers, troubles};
 use crate::markdown;
 use crate::table::{Column, Document, Table};
 
@@ -96,7 +96,7 @@ fn board_point(board: ::substitute::change::Board) -> Option<&'static str> {
 fn signatures() -> Table {
     let mut table = Table::new("Names and dates", &SIGNATURES);
     table.rows = ["prepared", "calculation read", "bench test done", "decided"]
-        .map(|step| vec![step.into(), "".into(), "".into(), "".into()])
+        .map(|step| vec![step.into(), ROOM.into(), ROOM.into(), ROOM.into()])
         .to_vec();
     table
 }

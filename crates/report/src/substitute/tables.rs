@@ -361,6 +361,9 @@ pub fn changes(mend: &Mend, currency: Option<&String>) -> Table {
     table
 }
 
+/// Room to write by hand.
+pub(crate) const ROOM: &str = "............";
+
 /// The columns of what to measure.
 pub const READINGS: [Column; 6] = [
     Column::text("measure", "what is measured, and where"),
@@ -383,7 +386,7 @@ pub fn readings(readings: &[Reading]) -> Table {
                 r.least.into(),
                 r.most.into(),
                 r.unit.into(),
-                Cell::Blank,
+                ROOM.into(),
             ]
         })
         .collect();
