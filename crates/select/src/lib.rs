@@ -15,12 +15,14 @@
 //! | [`front`] | candidates that nothing beats on cost, loss and stress at once |
 //! | [`count`] | exact counts of what is feasible and what is lost to which check |
 //! | [`candidate`] | a candidate with its values, and its proof |
+//! | [`certificate`] | claims that show that a list left nothing out |
 //!
 //! This crate knows no files and prints nothing.
 
 mod beside;
 mod boxes;
 pub mod candidate;
+pub mod certificate;
 mod company;
 pub mod count;
 pub mod front;
