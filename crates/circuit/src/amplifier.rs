@@ -115,6 +115,57 @@ impl AmplifierAtRail {
         }
     }
 
+    /// An amplifier at least as good as both in every check: each figure the better of the two, for
+    /// every check is monotone in each figure of an amplifier.
+    pub fn better_of(&self, other: &Self) -> Self {
+        // Where the sinking current is not given, it is not checked: nothing is better than that.
+        let isink = |x: Option<f64>, y: Option<f64>| x.zip(y).map(|(x, y)| x.max(y));
+        self.each_figure(other, f64::min, f64::max, isink)
+    }
+
+    /// An amplifier no better than either in any check: each figure the worse of the two.
+    pub fn worse_of(&self, other: &Self) -> Self {
+        let isink = |x: Option<f64>, y: Option<f64>| match (x, y) {
+            (Some(x), Some(y)) => Some(x.min(y)),
+            (one, other) => one.or(other),
+        };
+        self.each_figure(other, f64::max, f64::min, isink)
+    }
+
+    /// Joins two amplifiers figure by figure: `less` where less is better, `more` where more is.
+    fn each_figure(
+        &self,
+        other: &Self,
+        less: fn(f64, f64) -> f64,
+        more: fn(f64, f64) -> f64,
+        isink: impl Fn(Option<f64>, Option<f64>) -> Option<f64>,
+    ) -> Self {
+        let (p, q) = (&self.part, &other.part);
+        let part = Amplifier {
+            vs_min_v: less(p.vs_min_v, q.vs_min_v),
+            vs_max_v: more(p.vs_max_v, q.vs_max_v),
+            vcm_low_v: less(p.vcm_low_v, q.vcm_low_v),
+            vcm_high_v: less(p.vcm_high_v, q.vcm_high_v),
+            swing_low_v: less(p.swing_low_v, q.swing_low_v),
+            swing_high_v: less(p.swing_high_v, q.swing_high_v),
+            iout_a: more(p.iout_a, q.iout_a),
+            ib_max_a: less(p.ib_max_a, q.ib_max_a),
+            iq_max_a: less(p.iq_max_a, q.iq_max_a),
+            rth_ja_c_per_w: less(p.rth_ja_c_per_w, q.rth_ja_c_per_w),
+            isink_a: isink(p.isink_a, q.isink_a),
+            // The others work through the figures at the rail below.
+            ..*p
+        };
+        Self {
+            part,
+            fixed_error_v: less(self.fixed_error_v, other.fixed_error_v),
+            common_mode: less(self.common_mode, other.common_mode),
+            allowed_rise_c: more(self.allowed_rise_c, other.allowed_rise_c),
+            allowed_fault_rise_c: more(self.allowed_fault_rise_c, other.allowed_fault_rise_c),
+            fault_rise_c: less(self.fault_rise_c, other.fault_rise_c),
+        }
+    }
+
     /// The names of the stand-ins that this amplifier leans on.
     pub fn stand_ins_used(&self) -> impl Iterator<Item = &'static str> + use<> {
         let p = &self.part;

@@ -214,6 +214,18 @@ pub fn supply_checks(
     tally.take(amp.amp_supply_low(rail))
 }
 
+/// The checks in which no part but the amplifier takes part, of sections 4.2 and 4.6.
+#[inline]
+pub fn amplifier_checks(
+    amp: &AmplifierAtRail,
+    rail: &Rail,
+    tally: &mut impl Tally,
+) -> ControlFlow<()> {
+    supply_checks(amp, rail, tally)?;
+    tally.take(drive::swing_low(amp, rail))?;
+    drive::amp_fault(amp, rail).map_or(Continue(()), |finding| tally.take(finding))
+}
+
 /// The checks in which the amplifier meets the reference side: input range, divider window, divider.
 #[inline]
 pub fn input_checks(

@@ -17,6 +17,7 @@ use crate::arguments::Showing;
 use crate::files::FileFault;
 use crate::screen::Screen;
 use clap::{Parser, Subcommand};
+use select::certificate::CertificateError;
 
 /// Finds proven, priced parts for a linear series-pass voltage regulator in your own catalogs.
 #[derive(Debug, Parser)]
@@ -67,6 +68,8 @@ pub(crate) enum Fault {
     File(FileFault),
     /// The search gave up.
     Search(select::SearchError),
+    /// No certificate can be made.
+    Certificate(CertificateError),
     /// A defect of this program.
     Defect(String),
 }
@@ -78,6 +81,10 @@ impl Fault {
             Fault::Told => None,
             Fault::File(fault) => Some(fault.to_string()),
             Fault::Search(error) => Some(error.to_string()),
+            Fault::Certificate(CertificateError::TooLarge) => {
+                Some(CertificateError::TooLarge.to_string())
+            }
+            Fault::Certificate(error) => Fault::Defect(error.to_string()).untold(),
             Fault::Defect(what) => Some(format!("this is a defect of railwright: {what}")),
         }
     }

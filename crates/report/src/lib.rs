@@ -5,6 +5,7 @@
 //! | [`shortlist`] | the shortlist as one typed value, from which every output is made |
 //! | [`json`] | it as JSON, format 1 |
 //! | [`ranking_csv`] | its ranking as CSV |
+//! | [`certificate`] | it with claims about all that it leaves out, as JSON |
 //! | [`terminal`] | it as a table with what was covered, assumed, left unchecked |
 //! | [`page`] | it, or designs, as a page (HTML) with pictures and proofs |
 //! | [`design`] | one candidate as a design file |
@@ -28,6 +29,7 @@
 //! it is shown on, exit statuses, or how files are written.
 
 pub mod catalog_check;
+pub mod certificate;
 mod choice;
 pub mod design;
 pub mod dossier;

@@ -9,7 +9,7 @@
 //! |---|---|
 //! | `mark` | what ranks after the last row |
 //! | `sides` | the choices of each side that hold by themselves, and what they add |
-//! | `pairs` | groups of amplifiers beside which a check fails |
+//! | `pairs` | groups of amplifiers that are out beside a reference |
 
 mod mark;
 mod pairs;
@@ -20,12 +20,12 @@ use crate::grove::Share;
 use crate::problem::{Ground, Problem};
 use crate::rest::keep_few;
 use crate::sides::{meet_power, meet_reference};
-use circuit::check::{Check, WhileHolding};
-use circuit::drive;
+use circuit::check::Check;
 use circuit::slot::Slot;
 use mark::Mark;
-use pairs::{AmplifierTree, FailsByGroup};
-use sides::{Amplifiers, Pass, Powers, Reference};
+use pairs::{AmplifierTree, Groups};
+use rayon::prelude::*;
+use sides::{Amplifier, Amplifiers, Pass, Powers, Reference};
 use std::collections::HashSet;
 use std::fmt;
 use std::ops::Range;
@@ -41,39 +41,45 @@ pub struct Step {
     pub stress: f64,
 }
 
-/// A check that fails between each of some rows and each of a group of amplifiers.
+/// Why no pair of one of some references and one of a group of amplifiers is in the list.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord)]
+pub enum Because {
+    /// The check fails between them.
+    Fails(Check),
+    /// Whatever they are part of ranks after the last row.
+    RanksAfter,
+}
+
+/// A group of amplifiers, the references that it is claimed for, and why.
 #[derive(Debug, Clone, PartialEq)]
-pub struct Fails {
-    /// The check.
-    pub check: Check,
+pub struct Group {
+    /// Why.
+    pub because: Because,
     /// Places in `amplifier_order`.
     pub amplifiers: Range<u32>,
-    /// Transistors by place, or references by number among those that are left.
-    pub rows: Vec<Range<u64>>,
+    /// Open references, counted from 0.
+    pub references: Vec<Range<u32>>,
 }
 
 /// What is claimed of the combinations that a shortlist leaves out.
+///
+/// *Open* are the amplifiers and power sides that hold by themselves, but for transistors that no
+/// amplifier drives and amplifiers that drive none of the others; and the references that hold by
+/// themselves and beside the best figures of all open amplifiers, and that do not rank after the last
+/// row with the least that the other sides add. They are counted by zener, bias line, divider line,
+/// pot.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Claims {
+    /// Every open amplifier adds at least one of these.
+    pub least_amplifier: Vec<Step>,
+    /// Every open power side adds at least one of these.
+    pub least_power: Vec<Step>,
     /// Places of all amplifiers in an order in which groups of them are ranges.
     pub amplifier_order: Vec<u32>,
-    /// Transistors that amplifiers can't drive.
-    pub output: Vec<Fails>,
-    /// Every amplifier that is left adds at least one of these.
-    pub least_amplifier: Vec<Step>,
-    /// Every power side that is left adds at least one of these.
-    pub least_power: Vec<Step>,
-    /// Numbers of reference sides: all others are out.
-    pub references: Vec<Range<u64>>,
-    /// Every reference side that is left adds at least one of these.
-    pub least_reference: Vec<Step>,
-    /// Numbers of power sides: all others are out.
-    pub powers: Vec<Range<u64>>,
-    /// References that amplifiers don't suit.
-    pub input: Vec<Fails>,
-    /// Reference (number among those that are left) and amplifier (place) to be tried with every
-    /// power side that is left.
-    pub pairs: Vec<(u64, u32)>,
+    /// Pairs of reference and amplifier that are out.
+    pub groups: Vec<Group>,
+    /// The other pairs, each to be tried with every power side: reference and place of the amplifier.
+    pub pairs: Vec<(u32, u32)>,
 }
 
 /// Why a list can't be certified.
@@ -103,11 +109,11 @@ impl fmt::Display for CertificateError {
 impl std::error::Error for CertificateError {}
 
 /// Reference sides that are spoken of one by one at most.
-const MOST_REFERENCES: usize = 4_000_000;
+const MOST_REFERENCES: usize = 1_000_000;
 
-/// Steps of the power side, and of the other two.
+/// Steps of the power side, and of the amplifier.
 const POWER_STEPS: usize = 48;
-const OTHER_STEPS: usize = 12;
+const AMPLIFIER_STEPS: usize = 12;
 
 /// Finds the claims for the `top` first candidates of a problem as [`crate::ranking::shortlist`] gives
 /// them, without a spread.
@@ -124,9 +130,9 @@ pub fn certify(
     let mut amplifiers = Amplifiers::new(&ground);
     let mut powers = Powers::new(&ground);
 
-    let output = undriven(&ground, &mut amplifiers, &mut powers);
+    strike_out_undriven(&ground, &mut amplifiers, &mut powers);
     let tree = AmplifierTree::new(&amplifiers);
-    let least_amplifier = least(amplifiers.alive().map(|a| a.share), OTHER_STEPS);
+    let least_amplifier = least(amplifiers.alive().map(|a| a.share), AMPLIFIER_STEPS);
     let least_power = least(powers.shares(), POWER_STEPS);
 
     let others = (least_amplifier.as_slice(), least_power.as_slice());
@@ -134,80 +140,45 @@ pub fn certify(
     if references.len() > MOST_REFERENCES {
         return Err(CertificateError::TooLarge);
     }
-    let least_reference = least(references.iter().map(|r| r.share), OTHER_STEPS);
-    powers.retain(|_, mount, share| {
-        !mark.is_after(&least_reference, &least_amplifier, &[share], mount.names)
-    });
-
-    let mut input = FailsByGroup::default();
+    let mut groups = Groups::default();
     let mut pairs = Vec::new();
-    for (number, reference) in (0u64..).zip(&references) {
-        let test = |amp: &_| sides::failing_input(&ground, reference, amp);
-        let is_near = |share: Share, names| {
-            !mark.is_after(
-                &[reference.share],
-                &[share],
-                &least_power,
-                mark::together(reference.names, names),
-            )
+    for (number, reference) in (0u32..).zip(&references) {
+        let failing = |amp: &_| sides::failing_input(&ground, reference, amp);
+        let ranks_after = |share: Share, names| {
+            let names = mark::together(reference.names, names);
+            mark.is_after(&[reference.share], &[share], &least_power, names)
         };
-        let open = tree.sort_out(test, is_near, |check, group| input.add(check, group, number));
-        pairs.extend(open.into_iter().map(|amplifier| (number, amplifier)));
+        let left = tree.sort_out(failing, ranks_after, |because, group| {
+            groups.add(because, group, number);
+        });
+        pairs.extend(left.into_iter().map(|amplifier| (number, amplifier)));
     }
-    let claims = Claims {
-        amplifier_order: amplifiers.order.clone(),
-        output,
-        least_amplifier: steps(&least_amplifier),
-        least_power: steps(&least_power),
-        references: ranges(references.iter().map(|r| r.number)),
-        least_reference: steps(&least_reference),
-        powers: ranges(powers.numbers()),
-        input: input.into_claims(),
-        pairs,
-    };
     let listed: HashSet<_> = candidates.iter().map(|c| c.places).collect();
     let shown = Shown { ground: &ground, mark: &mark, amplifiers: &amplifiers, powers: &powers };
-    let all_hold = claims.pairs.iter().all(|&(number, amplifier)| {
-        references
-            .get(number as usize)
-            .is_some_and(|reference| shown.pair(reference, amplifier, &listed))
-    });
-    if all_hold { Ok(claims) } else { Err(CertificateError::Overlooked) }
+    let is_shown = |&(number, amplifier): &(u32, u32)| {
+        let reference = references.get(number as usize);
+        reference.is_some_and(|reference| shown.pair(reference, amplifier, &listed))
+    };
+    if !pairs.par_iter().all(is_shown) {
+        return Err(CertificateError::Overlooked);
+    }
+    Ok(Claims {
+        least_amplifier: steps(&least_amplifier),
+        least_power: steps(&least_power),
+        amplifier_order: amplifiers.order,
+        groups: groups.into_claims(),
+        pairs,
+    })
 }
 
-/// Strikes out transistors that no amplifier drives and amplifiers that drive none of the rest, and
-/// tells the checks that fail.
-fn undriven(
-    ground: &Ground<'_>,
-    amplifiers: &mut Amplifiers,
-    powers: &mut Powers,
-) -> Vec<Fails> {
-    let rail = ground.rail();
-    let failing = |pass: &Pass, amp: &_| {
-        WhileHolding::over(|t| drive::checks(amp, &pass.figures, rail, t)).err()
-    };
-    let mut claims = FailsByGroup::default();
-    let tree = AmplifierTree::new(amplifiers);
-    powers.passes.retain(|pass| {
-        let mut found = Vec::new();
-        let is_driven = tree.some_holds(|amp| failing(pass, amp), &mut found);
-        if !is_driven {
-            found.into_iter().for_each(|(check, group)| claims.add(check, group, pass.place));
-        }
-        is_driven
-    });
-    for (place, amplifier) in (0u32..).zip(&amplifiers.order) {
-        let Some(amp) = &amplifiers.by_place[*amplifier as usize] else { continue };
-        let checks: Option<Vec<Check>> =
-            powers.passes.iter().map(|pass| failing(pass, &amp.at_rail)).collect();
-        if let Some(checks) = checks {
-            for (pass, check) in powers.passes.iter().zip(checks) {
-                claims.add(check, place..place + 1, pass.place);
-            }
-            amplifiers.by_place[*amplifier as usize] = None;
-        }
+/// Strikes out transistors that no amplifier drives, and amplifiers that drive none of the rest.
+fn strike_out_undriven(ground: &Ground<'_>, amplifiers: &mut Amplifiers, powers: &mut Powers) {
+    let drives =
+        |amp: &Amplifier, pass: &Pass| meet_power(ground, &amp.at_rail, &pass.figures).is_some();
+    powers.passes.retain(|pass| amplifiers.alive().any(|amp| drives(amp, pass)));
+    for amp in &mut amplifiers.by_place {
+        amp.take_if(|amp| !powers.passes.iter().any(|pass| drives(amp, pass)));
     }
-    claims.into_claims()
 }
 
 /// A pair of reference and amplifier with all power sides that are left.
@@ -257,19 +228,4 @@ fn least(shares: impl Iterator<Item = Share>, most: usize) -> Vec<Share> {
 fn steps(shares: &[Share]) -> Vec<Step> {
     let step = |s: &Share| Step { cost: s.cost, current_a: s.current_a, stress: s.stress };
     shares.iter().map(step).collect()
-}
-
-/// Rising numbers as ranges.
-fn ranges(numbers: impl Iterator<Item = u64>) -> Vec<Range<u64>> {
-    let mut ranges: Vec<Range<u64>> = Vec::new();
-    numbers.for_each(|number| append(&mut ranges, number));
-    ranges
-}
-
-/// Adds a number that is greater than all before it.
-fn append(ranges: &mut Vec<Range<u64>>, number: u64) {
-    match ranges.last_mut() {
-        Some(last) if last.end == number => last.end = number + 1,
-        _ => ranges.push(number..number + 1),
-    }
 }

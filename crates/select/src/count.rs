@@ -12,7 +12,6 @@
 
 use crate::boxes::{Boxes, Item, Pieces};
 use crate::problem::{Ground, Problem};
-use crate::sides::amplifier::{better_amplifier, worse_amplifier};
 use crate::sides::power::{better_to_drive, worse_to_drive};
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::{Network, choose_divider, input_checks, supply_checks};
@@ -297,8 +296,8 @@ impl Item for AmplifierExtent {
     }
 
     fn widen(span: &mut AmplifierSpan, other: &AmplifierSpan) {
-        span.best = better_amplifier(&span.best, &other.best);
-        span.worst = worse_amplifier(&span.worst, &other.worst);
+        span.best = span.best.better_of(&other.best);
+        span.worst = span.worst.worse_of(&other.worst);
     }
 
     const AXES: usize = 5;

@@ -10,11 +10,13 @@ use crate::progress::watched;
 use crate::screen::Screen;
 use clap::{Args, ValueEnum};
 use eligible::Eligible;
+use report::certificate::Asked;
 use report::dossier::shortlist::{Ordered, document};
 use report::notices::Warnings;
 use report::shortlist::{Shortlist, lost};
 use report::{design, json, markdown, ranking_csv, terminal, workbook};
 use select::candidate::Candidate;
+use select::certificate;
 use select::count::{Counts, count};
 use select::front::front;
 use select::problem::Problem;
@@ -65,6 +67,10 @@ pub(crate) struct Arguments {
     /// The candidate that order lines are for, by its rank or id [default: the first]
     #[arg(long, value_name = "RANK|ID", requires = "out")]
     pick: Option<String>,
+    /// Write a certificate beside the list: claims that show that it left nothing better out, for the
+    /// checker `certificate-check`
+    #[arg(long, value_name = "FILE", conflicts_with_all = ["front", "spread"])]
+    certificate: Option<PathBuf>,
     /// Replace files that are there already
     #[arg(long)]
     overwrite: bool,
@@ -100,6 +106,23 @@ enum Criterion {
     Stress,
 }
 
+impl Criterion {
+    const fn name(self) -> &'static str {
+        match self {
+            Criterion::Cost => "cost",
+            Criterion::Loss => "loss",
+            Criterion::Stress => "stress",
+        }
+    }
+}
+
+impl Arguments {
+    /// How many rows are asked for.
+    fn rows(&self) -> usize {
+        self.top.and_then(|rows| usize::try_from(rows).ok()).unwrap_or(USUAL_ROWS)
+    }
+}
+
 /// Rows that are shown where nothing else is asked for.
 const USUAL_ROWS: usize = 10;
 
@@ -110,7 +133,8 @@ const QUICKLY_COUNTED: usize = 9;
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
     let outputs = arguments.out.iter().map(|target| target.path.as_path());
-    check(outputs.chain(arguments.as_file.as_deref()), arguments.overwrite)?;
+    let others = [arguments.as_file.as_deref(), arguments.certificate.as_deref()];
+    check(outputs.chain(others.into_iter().flatten()), arguments.overwrite)?;
 
     let mut notices = Vec::new();
     let mut loaded =
@@ -133,6 +157,10 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     let listed = Listed { list: &list, candidates: &candidates, eligible: &eligible };
     let in_page = || page::of_list(&listed, loaded, &problem, screen);
     let written = write(arguments, &listed, &in_page, screen)?;
+    if let Some(path) = &arguments.certificate {
+        certify(arguments, &problem, &candidates, &list, path)?;
+        screen.mention(&format!("wrote {}", path.display()));
+    }
     let kept = keep(arguments, &list, &eligible, &loaded.sheet_path, screen)?;
     let text = terminal::shortlist(&list, counts.as_ref().map(lost).as_ref(), &screen.data);
     screen.show(&text).map_err(|e| Fault::Defect(format!("standard output: {e}")))?;
@@ -178,7 +206,7 @@ fn found(
             rows.truncate(top.unwrap_or(usize::MAX));
             Ok(rows)
         } else {
-            shortlist(problem, top.unwrap_or(USUAL_ROWS), &spread)
+            shortlist(problem, arguments.rows(), &spread)
         }
     })
     .map_err(Fault::Search)
@@ -194,6 +222,26 @@ fn counted(
     let quick = || problem.covered().to_string().len() <= QUICKLY_COUNTED;
     let wanted = arguments.count || (is_empty && quick());
     wanted.then(|| watched("counting", screen.shows_progress(), |tell| count(problem, tell)))
+}
+
+/// Writes the certificate of the list.
+fn certify(
+    arguments: &Arguments,
+    problem: &Problem<'_>,
+    candidates: &[Candidate],
+    list: &Shortlist<'_>,
+    path: &Path,
+) -> Result<(), Fault> {
+    let top = arguments.rows();
+    let claims = certificate::certify(problem, candidates, top).map_err(Fault::Certificate)?;
+    let asked = Asked {
+        by: arguments.by.map(Criterion::name),
+        skip_broken_rows: arguments.catalogs.skip_broken_rows,
+        top,
+    };
+    let text = report::certificate::certificate(list, &claims, asked)
+        .map_err(|e| Fault::Defect(e.to_string()))?;
+    Ok(write_whole(path, &text, arguments.overwrite)?)
 }
 
 /// Writes the files that are asked for; No, and no file with order lines, where --pick names no row.

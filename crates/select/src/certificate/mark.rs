@@ -52,9 +52,8 @@ impl Mark {
                 cost: rounded(last.cost),
                 stress: rounded(last.stress),
                 loss: rounded(last.loss),
-                names: Slot::BY_NAME.map(|slot| {
-                    last.place(slot).map_or(0, |place| ground.ranks.of(slot, place))
-                }),
+                names: Slot::BY_NAME
+                    .map(|slot| last.place(slot).map_or(0, |place| ground.ranks.of(slot, place))),
             },
         });
         let first_names = Slot::BY_NAME.map(|slot| match slot {

@@ -1,10 +1,9 @@
-//! Groups of amplifiers beside which a check fails.
+//! Groups of amplifiers that are out beside a reference.
 
 use super::mark::Names;
 use super::sides::Amplifiers;
-use super::{Fails, append};
+use super::{Because, Group};
 use crate::grove::Share;
-use crate::sides::amplifier::better_amplifier;
 use circuit::amplifier::AmplifierAtRail;
 use circuit::check::Check;
 use circuit::slot::Slot;
@@ -12,9 +11,9 @@ use std::collections::BTreeMap;
 use std::ops::Range;
 
 /// Amplifiers in their order, halved again and again, each group with the best of its figures.
-pub(super) struct AmplifierTree(Vec<Group>);
+pub(super) struct AmplifierTree(Vec<Node>);
 
-struct Group {
+struct Node {
     /// Places in the order of the amplifiers.
     range: Range<u32>,
     best: AmplifierAtRail,
@@ -36,11 +35,11 @@ impl AmplifierTree {
 
     /// Adds a group behind its halves; None where none of its amplifiers is left.
     fn add(&mut self, amplifiers: &Amplifiers, range: Range<u32>) -> Option<usize> {
-        let group = if range.len() == 1 {
+        let node = if range.len() == 1 {
             let place = amplifiers.order[range.start as usize];
             let amp = amplifiers.by_place[place as usize].as_ref()?;
             let (best, share, names) = (amp.at_rail, amp.share, amp.names);
-            Group { range, best, share, names, only: Some(place), halves: Vec::new() }
+            Node { range, best, share, names, only: Some(place), halves: Vec::new() }
         } else {
             if range.is_empty() {
                 return None;
@@ -53,73 +52,62 @@ impl AmplifierTree {
             let (first, rest) = halves.split_first()?;
             let (mut best, mut share) = (self.0[*first].best, self.0[*first].share);
             for half in rest {
-                best = better_amplifier(&best, &self.0[*half].best);
+                best = best.better_of(&self.0[*half].best);
                 share.least(&self.0[*half].share);
             }
-            Group { range, best, share, names: [0; Slot::COUNT], only: None, halves }
+            Node { range, best, share, names: [0; Slot::COUNT], only: None, halves }
         };
-        self.0.push(group);
+        self.0.push(node);
         Some(self.0.len() - 1)
     }
 
     /// The best figures of all amplifiers; None where none is left.
     pub fn best(&self) -> Option<&AmplifierAtRail> {
-        self.0.last().map(|group| &group.best)
+        self.0.last().map(|node| &node.best)
     }
 
-    /// Some amplifier holds; else `found` has the groups beside which a check fails, which are all.
-    pub fn some_holds(
-        &self,
-        failing: impl Fn(&AmplifierAtRail) -> Option<Check>,
-        found: &mut Vec<(Check, Range<u32>)>,
-    ) -> bool {
-        let mut open: Vec<&Group> = self.0.last().into_iter().collect();
-        while let Some(group) = open.pop() {
-            match failing(&group.best) {
-                Some(check) => found.push((check, group.range.clone())),
-                None if group.only.is_some() => return true,
-                None => open.extend(group.halves.iter().map(|half| &self.0[*half])),
-            }
-        }
-        false
-    }
-
-    /// Tells the places of the amplifiers that are near and hold, and hands the groups of the others
-    /// that are near to `fails`.
+    /// Hands groups that are out, and why, to `out`, the largest that a bound on all of the group
+    /// tells of; gives the places of the other amplifiers.
     pub fn sort_out(
         &self,
         failing: impl Fn(&AmplifierAtRail) -> Option<Check>,
-        is_near: impl Fn(Share, Names) -> bool,
-        mut fails: impl FnMut(Check, Range<u32>),
+        ranks_after: impl Fn(Share, Names) -> bool,
+        mut out: impl FnMut(Because, Range<u32>),
     ) -> Vec<u32> {
-        let mut holding = Vec::new();
-        let mut open: Vec<&Group> = self.0.last().into_iter().collect();
-        while let Some(group) = open.pop() {
-            if !is_near(group.share, group.names) {
-                continue;
-            }
-            match (failing(&group.best), group.only) {
-                (Some(check), _) => fails(check, group.range.clone()),
-                (None, Some(place)) => holding.push(place),
-                (None, None) => open.extend(group.halves.iter().map(|half| &self.0[*half])),
+        let mut left = Vec::new();
+        let mut open: Vec<&Node> = self.0.last().into_iter().collect();
+        while let Some(node) = open.pop() {
+            if ranks_after(node.share, node.names) {
+                out(Because::RanksAfter, node.range.clone());
+            } else if let Some(check) = failing(&node.best) {
+                out(Because::Fails(check), node.range.clone());
+            } else if let Some(place) = node.only {
+                left.push(place);
+            } else {
+                open.extend(node.halves.iter().map(|half| &self.0[*half]));
             }
         }
-        holding
+        left
     }
 }
 
-/// Failing checks gathered by check and group of amplifiers.
+/// References gathered by group of amplifiers and why it is out.
 #[derive(Default)]
-pub(super) struct FailsByGroup(BTreeMap<(Check, u32, u32), Vec<Range<u64>>>);
+pub(super) struct Groups(BTreeMap<(Because, u32, u32), Vec<Range<u32>>>);
 
-impl FailsByGroup {
-    /// A check fails between a row and a group. Rows of a group rise.
-    pub fn add(&mut self, check: Check, group: Range<u32>, row: u64) {
-        append(self.0.entry((check, group.start, group.end)).or_default(), row);
+impl Groups {
+    /// A group is out beside a reference, counted upwards.
+    pub fn add(&mut self, because: Because, group: Range<u32>, reference: u32) {
+        let references = self.0.entry((because, group.start, group.end)).or_default();
+        match references.last_mut() {
+            Some(last) if last.end == reference => last.end = reference + 1,
+            _ => references.push(reference..reference + 1),
+        }
     }
 
-    pub fn into_claims(self) -> Vec<Fails> {
-        let claim = |((check, from, to), rows)| Fails { check, amplifiers: from..to, rows };
+    pub fn into_claims(self) -> Vec<Group> {
+        let claim =
+            |((because, from, to), references)| Group { because, amplifiers: from..to, references };
         self.0.into_iter().map(claim).collect()
     }
 }

@@ -5,15 +5,13 @@ use crate::grove::Share;
 use crate::problem::Ground;
 use crate::sides::reference::CompleteReference;
 use circuit::amplifier::AmplifierAtRail;
-use circuit::assembly::{self, Network, choose_divider, supply_checks};
-use circuit::check::{Check, Tally, WhileHolding};
+use circuit::assembly::{self, Network, amplifier_checks, choose_divider};
+use circuit::check::{Check, WhileHolding};
 use circuit::divider::nominal_current_a;
-use circuit::drive;
 use circuit::pass::{CaseTemperatures, Mounted, PassFigures, Unmounted};
 use circuit::reference::{ZenerAtRail, choose_rz};
 use circuit::slot::Slot;
 use rayon::prelude::*;
-use std::ops::ControlFlow::Continue;
 
 /// Names of some slots, by slot and place.
 fn names(ground: &Ground<'_>, places: &[(Slot, Option<u32>)]) -> Names {
@@ -50,12 +48,7 @@ impl Amplifiers {
             .zip(parts)
             .zip(&at_rail)
             .map(|((place, part), at_rail)| {
-                let stress = WhileHolding::over(|t| {
-                    supply_checks(at_rail, rail, t)?;
-                    t.take(drive::swing_low(at_rail, rail))?;
-                    drive::amp_fault(at_rail, rail).map_or(Continue(()), |f| t.take(f))
-                })
-                .ok()?;
+                let stress = WhileHolding::over(|t| amplifier_checks(at_rail, rail, t)).ok()?;
                 Some(Amplifier {
                     at_rail: *at_rail,
                     share: Share { cost: part.price, current_a: part.figures.iq_max_a, stress },
@@ -82,7 +75,7 @@ pub(super) struct Mount {
 
 /// A transistor with the mountings on which it holds.
 pub(super) struct Pass {
-    pub place: u64,
+    pub place: u32,
     pub figures: PassFigures,
     pub mounts: Vec<Mount>,
 }
@@ -90,8 +83,6 @@ pub(super) struct Pass {
 /// All power sides that hold.
 pub(super) struct Powers {
     pub passes: Vec<Pass>,
-    /// Numbers of power sides for one transistor.
-    stride: u64,
 }
 
 impl Powers {
@@ -131,44 +122,26 @@ impl Powers {
                 let mut mounts: Vec<Mount> =
                     bare.and_then(|mounted| mount(mounted, None)).into_iter().collect();
                 if let Some(class) = ground.classes.of(place) {
-                    mounts.extend(ground.classes.sinks[class as usize].iter().filter_map(|&sink| {
-                        mount(Mounted::on(cases[sink as usize], &figures, duty), Some(sink))
-                    }));
+                    mounts.extend(ground.classes.sinks[class as usize].iter().filter_map(
+                        |&sink| {
+                            mount(Mounted::on(cases[sink as usize], &figures, duty), Some(sink))
+                        },
+                    ));
                 }
-                Pass { place: place as u64, figures, mounts }
+                Pass { place: place as u32, figures, mounts }
             })
             .filter(|pass| !pass.mounts.is_empty())
             .collect();
-        Self { passes, stride: problem.heatsinks.len() as u64 + 1 }
+        Self { passes }
     }
 
     pub fn shares(&self) -> impl Iterator<Item = Share> {
         self.passes.iter().flat_map(|pass| pass.mounts.iter().map(|mount| mount.share))
     }
-
-    /// The numbers of the power sides that are left: for each transistor first the one without a
-    /// chosen heatsink, then one for each heatsink.
-    pub fn numbers(&self) -> impl Iterator<Item = u64> {
-        self.passes.iter().flat_map(move |pass| {
-            let of_sink = |sink: Option<u32>| sink.map_or(0, |s| u64::from(s) + 1);
-            pass.mounts.iter().map(move |mount| pass.place * self.stride + of_sink(mount.sink))
-        })
-    }
-
-    /// Keeps the power sides that `stays` lets stay.
-    pub fn retain(&mut self, stays: impl Fn(&Pass, &Mount, Share) -> bool) {
-        for pass in &mut self.passes {
-            let mut mounts = std::mem::take(&mut pass.mounts);
-            mounts.retain(|mount| stays(pass, mount, mount.share));
-            pass.mounts = mounts;
-        }
-        self.passes.retain(|pass| !pass.mounts.is_empty());
-    }
 }
 
 /// A reference side with its values.
 pub(super) struct Reference {
-    pub number: u64,
     pub complete: CompleteReference,
     pub share: Share,
     pub names: Names,
@@ -176,14 +149,19 @@ pub(super) struct Reference {
 
 impl Reference {
     /// The places of the whole combination.
-    pub fn places(&self, amplifier: u32, pass: u64, sink: Option<u32>) -> [Option<u32>; Slot::COUNT] {
+    pub fn places(
+        &self,
+        amplifier: u32,
+        pass: u32,
+        sink: Option<u32>,
+    ) -> [Option<u32>; Slot::COUNT] {
         let mut places = [None; Slot::COUNT];
         places[Slot::Zener as usize] = Some(self.complete.zener);
         places[Slot::BiasLine as usize] = Some(self.complete.bias_line);
         places[Slot::Amplifier as usize] = Some(amplifier);
         places[Slot::DividerLine as usize] = Some(self.complete.divider_line);
         places[Slot::Pot as usize] = self.complete.pot;
-        places[Slot::Pass as usize] = u32::try_from(pass).ok();
+        places[Slot::Pass as usize] = Some(pass);
         places[Slot::Heatsink as usize] = sink;
         places
     }
@@ -210,7 +188,7 @@ pub(super) fn failing_input(
 /// The reference sides that hold by themselves, that the best figures of all amplifiers suit, and
 /// that do not surely rank after the last row.
 ///
-/// They are numbered zener by zener, for each zener by bias line, then by divider line, then by pot.
+/// They come zener by zener, for each zener by bias line, then by divider line, then by pot.
 pub(super) fn references(
     ground: &Ground<'_>,
     mark: &Mark,
@@ -267,13 +245,9 @@ pub(super) fn references(
                     );
                     let Some(divider) = choice.divider() else { continue };
                     let pieces = if divider.upper.is_link() { 1.0 } else { 2.0 };
-                    let biased =
-                        u64::from(zener) * problem.bias_lines.len() as u64 + u64::from(bias_line);
-                    let on_line = biased * u64::from(lines) + u64::from(divider_line);
                     let complete =
                         CompleteReference { zener, bias_line, bias, divider_line, divider, pot };
                     let reference = Reference {
-                        number: on_line * pots.len() as u64 + u64::from(pot.unwrap_or(0)),
                         complete,
                         share: Share {
                             cost: without + pieces * line_price + price(pot),

@@ -4,13 +4,10 @@ use crate::boxes::{Boxes, Item, Pieces};
 use crate::grove::{Growth, Names, Node, Share, Slots, least_names};
 use crate::problem::Ground;
 use circuit::amplifier::AmplifierAtRail;
-use circuit::assembly::supply_checks;
-use circuit::check::{Tally, WhileHolding};
-use circuit::drive;
-use circuit::parts::Amplifier;
+use circuit::assembly::amplifier_checks;
+use circuit::check::WhileHolding;
 use circuit::slot::Slot;
 use rayon::prelude::*;
-use std::ops::ControlFlow::Continue;
 
 /// An amplifier that holds wherever no other part takes part.
 pub(crate) struct AmplifierItem {
@@ -28,56 +25,6 @@ pub(crate) struct BestAmplifier {
     names: Names,
 }
 
-/// An amplifier at least as good as both in every check: each figure the better of the two.
-pub(crate) fn better_amplifier(a: &AmplifierAtRail, b: &AmplifierAtRail) -> AmplifierAtRail {
-    // Where the sinking current is not given, it is not checked: nothing is better than that.
-    let isink = |x: Option<f64>, y: Option<f64>| x.zip(y).map(|(x, y)| x.max(y));
-    each_figure(a, b, f64::min, f64::max, isink)
-}
-
-/// An amplifier no better than either in any check: each figure the worse of the two.
-pub(crate) fn worse_amplifier(a: &AmplifierAtRail, b: &AmplifierAtRail) -> AmplifierAtRail {
-    let isink = |x: Option<f64>, y: Option<f64>| match (x, y) {
-        (Some(x), Some(y)) => Some(x.min(y)),
-        (one, other) => one.or(other),
-    };
-    each_figure(a, b, f64::max, f64::min, isink)
-}
-
-/// Joins two amplifiers figure by figure: `less` where less is better, `more` where more is.
-fn each_figure(
-    a: &AmplifierAtRail,
-    b: &AmplifierAtRail,
-    less: fn(f64, f64) -> f64,
-    more: fn(f64, f64) -> f64,
-    isink: impl Fn(Option<f64>, Option<f64>) -> Option<f64>,
-) -> AmplifierAtRail {
-    let (p, q) = (&a.part, &b.part);
-    let part = Amplifier {
-        vs_min_v: less(p.vs_min_v, q.vs_min_v),
-        vs_max_v: more(p.vs_max_v, q.vs_max_v),
-        vcm_low_v: less(p.vcm_low_v, q.vcm_low_v),
-        vcm_high_v: less(p.vcm_high_v, q.vcm_high_v),
-        swing_low_v: less(p.swing_low_v, q.swing_low_v),
-        swing_high_v: less(p.swing_high_v, q.swing_high_v),
-        iout_a: more(p.iout_a, q.iout_a),
-        ib_max_a: less(p.ib_max_a, q.ib_max_a),
-        iq_max_a: less(p.iq_max_a, q.iq_max_a),
-        rth_ja_c_per_w: less(p.rth_ja_c_per_w, q.rth_ja_c_per_w),
-        isink_a: isink(p.isink_a, q.isink_a),
-        // The others work through the figures at the rail below.
-        ..*p
-    };
-    AmplifierAtRail {
-        part,
-        fixed_error_v: less(a.fixed_error_v, b.fixed_error_v),
-        common_mode: less(a.common_mode, b.common_mode),
-        allowed_rise_c: more(a.allowed_rise_c, b.allowed_rise_c),
-        allowed_fault_rise_c: more(a.allowed_fault_rise_c, b.allowed_fault_rise_c),
-        fault_rise_c: less(a.fault_rise_c, b.fault_rise_c),
-    }
-}
-
 impl Item for AmplifierItem {
     type Best = BestAmplifier;
 
@@ -88,7 +35,7 @@ impl Item for AmplifierItem {
     }
 
     fn widen(best: &mut BestAmplifier, other: &BestAmplifier) {
-        best.figures = better_amplifier(&best.figures, &other.figures);
+        best.figures = best.figures.better_of(&other.figures);
         best.share.least(&other.share);
         least_names(&mut best.names, &other.names);
     }
@@ -132,12 +79,7 @@ impl AmplifierSide {
             .enumerate()
             .filter_map(|(index, part)| {
                 let at_rail = AmplifierAtRail::new(part.figures, rail);
-                let stress = WhileHolding::over(|t| {
-                    supply_checks(&at_rail, rail, t)?;
-                    t.take(drive::swing_low(&at_rail, rail))?;
-                    drive::amp_fault(&at_rail, rail).map_or(Continue(()), |f| t.take(f))
-                })
-                .ok()?;
+                let stress = WhileHolding::over(|t| amplifier_checks(&at_rail, rail, t)).ok()?;
                 Some(AmplifierItem {
                     index: index as u32,
                     at_rail,
