@@ -12,6 +12,9 @@ use std::collections::{HashMap, HashSet};
 /// Beyond this many columns no further unknown one is compared with the known names.
 const MOST_COMPARED: usize = 1000;
 
+/// At most so many names are told one by one to be at fault.
+const MOST_TOLD: usize = 20;
+
 /// A header row, read.
 #[derive(Debug, Clone, Default)]
 pub(crate) struct Header {
@@ -151,8 +154,17 @@ impl Header {
         let new_names: HashMap<&str, &str> =
             renamed.iter().map(|(file, page)| (file.trim(), page.trim())).collect();
         let mut sound = true;
+        // A place is found by walking there, so what is wrong with a million names is not told of each.
+        let mut told = 0..MOST_TOLD;
+        let mut more = 0usize;
         for (field, cell) in record.iter().enumerate() {
             let Ok(text) = std::str::from_utf8(cell) else {
+                sound = false;
+                self.names.push(String::new());
+                if told.next().is_none() {
+                    more += 1;
+                    continue;
+                }
                 notices.push(
                     place
                         .about(field, |p| {
@@ -164,8 +176,6 @@ impl Header {
                         })
                         .mend("save the file as UTF-8"),
                 );
-                sound = false;
-                self.names.push(String::from_utf8_lossy(cell).into_owned());
                 continue;
             };
             let text = text.trim();
@@ -175,7 +185,11 @@ impl Header {
             }
             let name = new_name.unwrap_or(text).to_owned();
             // Columns without a name, as a comma at the end of a line makes them, are no clash.
-            if !name.is_empty() && !seen.insert(name.clone()) {
+            let is_clash = !name.is_empty() && !seen.insert(name.clone());
+            sound &= !is_clash;
+            if is_clash && told.next().is_none() {
+                more += 1;
+            } else if is_clash {
                 let expected = format!("`{}` once", brief(&name));
                 notices.push(
                     place
@@ -189,9 +203,13 @@ impl Header {
                         .expected(expected)
                         .mend("rename or delete one of the two columns"),
                 );
-                sound = false;
             }
             self.names.push(name);
+        }
+        if more > 0 {
+            let message = format!("and {more} more names of columns are at fault");
+            let at = Place::line(place.kind.file_name(), place.line);
+            notices.push(Notice::error("notices-cut", at, message));
         }
         sound.then_some(())
     }

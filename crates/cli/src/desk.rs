@@ -2,7 +2,7 @@
 
 use crate::arguments::Catalogs;
 use crate::files::folder_of;
-use crate::load::{SHOP_FILE, ShopText, read_catalogs};
+use crate::load::{SHOP_FILE, ShopText, read_catalogs, read_file, text};
 use catalog::Shop;
 use design::Design;
 use notice::{Notice, Place, has_errors};
@@ -162,23 +162,6 @@ fn in_order(path: &Path) -> PathBuf {
 
 /// The text of a file; None with a notice where it can't be read.
 pub(crate) fn read_text(path: &Path, notices: &mut Vec<Notice>) -> Option<String> {
-    let place = Place::file(path.display().to_string());
-    let notice = match std::fs::read_to_string(path) {
-        Ok(text) => return Some(text),
-        Err(error) => match error.kind() {
-            std::io::ErrorKind::NotFound => {
-                Notice::error("file-missing", place, "there is no such file")
-            }
-            std::io::ErrorKind::InvalidData => {
-                Notice::error("file-encoding", place, "the file is not in UTF-8")
-                    .mend("save it as UTF-8")
-            }
-            _ => {
-                let message = format!("the file can't be read: {error}");
-                Notice::error("file-unreadable", place, message)
-            }
-        },
-    };
-    notices.push(notice);
-    None
+    let bytes = read_file(path, notices)?;
+    text(&path.display().to_string(), &bytes, notices).map(str::to_owned)
 }

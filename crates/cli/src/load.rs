@@ -7,7 +7,8 @@ use eligible::{Eligible, eligible};
 use notice::{Notice, Place, has_errors};
 use report::shortlist::Files;
 use sheet::{Sheet, ShopFile};
-use std::io::ErrorKind;
+use std::fs::File;
+use std::io::{ErrorKind, Read};
 use std::path::{Path, PathBuf};
 
 /// The name of the shop file in the folder of catalogs.
@@ -104,10 +105,17 @@ impl ShopText {
             return None;
         }
         let path = folder.join(SHOP_FILE);
-        if let Err(error) = path.symlink_metadata()
-            && error.kind() == ErrorKind::NotFound
-        {
-            return Some(Self { content: ShopFile::empty(), bytes: None });
+        match path.symlink_metadata() {
+            Err(error) if error.kind() == ErrorKind::NotFound => {
+                return Some(Self { content: ShopFile::empty(), bytes: None });
+            }
+            // A pipe under this name would be waited for without end.
+            Ok(found) if !found.is_symlink() && !found.is_file() => {
+                let place = Place::file(path.display().to_string());
+                notices.push(Notice::error("file-unreadable", place, "this is no regular file"));
+                return None;
+            }
+            _ => {}
         }
         let bytes = read_file(&path, notices)?;
         let content = ShopFile::read(SHOP_FILE, text(SHOP_FILE, &bytes, notices)?, notices)?;
@@ -168,12 +176,27 @@ fn unused_columns(shop_file: &ShopFile, shop: &Shop, notices: &mut Vec<Notice>) 
     }
 }
 
-fn read_file(path: &Path, notices: &mut Vec<Notice>) -> Option<Vec<u8>> {
-    let fault = match std::fs::read(path) {
-        Ok(bytes) => return Some(bytes),
+/// The most that a sheet, a design or a shop file may hold, bytes: thousands of times what one needs, and
+/// an end to what has none, such as a device.
+const LARGEST: u64 = 16 * 1024 * 1024;
+
+/// The bytes of a sheet, a design or a shop file; None with a notice where it can't be read.
+pub(crate) fn read_file(path: &Path, notices: &mut Vec<Notice>) -> Option<Vec<u8>> {
+    let mut bytes = Vec::new();
+    let read = File::open(path).and_then(|file| file.take(LARGEST + 1).read_to_end(&mut bytes));
+    let place = Place::file(path.display().to_string());
+    let fault = match read {
+        Ok(length) if length as u64 <= LARGEST => return Some(bytes),
+        Ok(_) => {
+            let message = format!("the file holds more than {} MB", LARGEST >> 20);
+            notices.push(
+                Notice::error("file-too-large", place, message)
+                    .expected("a rail sheet, a design or a shop file, a few kilobytes of TOML"),
+            );
+            return None;
+        }
         Err(fault) => fault,
     };
-    let place = Place::file(path.display().to_string());
     notices.push(if fault.kind() == ErrorKind::NotFound {
         Notice::error("file-missing", place, "there is no such file")
     } else {
@@ -182,7 +205,8 @@ fn read_file(path: &Path, notices: &mut Vec<Notice>) -> Option<Vec<u8>> {
     None
 }
 
-fn text<'b>(name: &str, bytes: &'b [u8], notices: &mut Vec<Notice>) -> Option<&'b str> {
+/// The bytes as a text; None with a notice where they are no UTF-8.
+pub(crate) fn text<'b>(name: &str, bytes: &'b [u8], notices: &mut Vec<Notice>) -> Option<&'b str> {
     match std::str::from_utf8(bytes) {
         Ok(text) => Some(text),
         Err(fault) => {

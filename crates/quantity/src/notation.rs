@@ -225,7 +225,8 @@ pub fn quick(cell: &[u8], unit: Unit) -> Option<f64> {
     }
     match cell.get(used..)? {
         [] => number.nearest(0),
-        &[letter] if !is_kelvin(letter, unit) => {
+        // Beyond ASCII a lone byte is no UTF-8, though `char::from` would read a µ of an older code page.
+        &[letter] if letter.is_ascii() && !is_kelvin(letter, unit) => {
             number.nearest(prefix_exponent(char::from(letter))?)
         }
         _ => None,

@@ -35,7 +35,7 @@ pub(super) fn read_catalog<T: Figures>(
     }
     let mut reading = Reading::new(options);
     for FileThere { name, path } in found {
-        match std::fs::read(path) {
+        match read_regular(&path) {
             Ok(bytes) => reading.add(&name, bytes),
             Err(error) if error.kind() == ErrorKind::NotFound => {
                 notices.push(files::missing(kind, folder));
@@ -44,6 +44,15 @@ pub(super) fn read_catalog<T: Figures>(
         }
     }
     (reading.finish(&mut notices), notices)
+}
+
+/// The bytes of a regular file. A pipe would be waited for without end, and a device may have none.
+fn read_regular(path: &Path) -> std::io::Result<Vec<u8>> {
+    if path.metadata()?.is_file() {
+        std::fs::read(path)
+    } else {
+        Err(std::io::Error::other("it is no regular file"))
+    }
 }
 
 /// The catalog of one file that is in memory.
