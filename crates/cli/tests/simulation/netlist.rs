@@ -40,8 +40,6 @@ pub fn of(stage: &Stage<'_>, corner: &Corner) -> String {
         End::High => rail.ambient.max_c,
     };
     let rz_ohm = line_ohm(stage, stage.rz_ohm, stage.bias_line, corner.rz);
-    let zener_v = stage.zener.vz_v;
-    let output_v = zener_v * (1.0 + (stage.upper_ohm + track_ohm(stage, corner)) / stage.ri_ohm);
     [
         format!("{corner:?}"),
         format!("Bfeed fs 0 V = {feed_v:e} - {falls_v:e}*min(1, i(Ve)/{full_a:e})"),
@@ -54,11 +52,6 @@ pub fn of(stage: &Stage<'_>, corner: &Corner) -> String {
         divider(stage, corner),
         format!("Iload o 0 {load_a:e}"),
         heat(stage, ambient_c),
-        // Where the solver begins; it finds the point by itself, but sooner from here.
-        format!(
-            ".nodeset v(z)={zener_v:e} v(d)={zener_v:e} v(o)={output_v:e} v(a)={:e}",
-            output_v + 0.7
-        ),
         ".options reltol=1e-7 vntol=1e-9 abstol=1e-12 itl1=500".to_owned(),
     ]
     .join("\n")
