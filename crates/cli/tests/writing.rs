@@ -35,7 +35,7 @@ fn in_own_name_space(test: &str, folder: &Path, script: &str) -> Option<common::
     let unshare = |script: &str| {
         let mut command = Command::new("unshare");
         command.args(["--user", "--map-root-user", "--mount", "sh", "-ec", script]);
-        command.args(["sh", env!("CARGO_BIN_EXE_railwright")]).arg(case("fixed-12v"));
+        command.arg(env!("CARGO_BIN_EXE_railwright")).arg(case("fixed-12v"));
         command.current_dir(folder).stdin(Stdio::null());
         command.output()
     };

@@ -34,6 +34,9 @@ const FORMAT: &str = "design-format";
 /// At most so many faults of TOML itself are told: after a slip the parser stumbles on.
 const MOST_SYNTAX_FAULTS: usize = 5;
 
+/// Once a file has so many faults no further unknown key is told.
+const MOST_UNKNOWN: usize = 200;
+
 /// Reads a design. `file_name` is what notices call the file.
 ///
 /// # Errors
@@ -360,6 +363,10 @@ impl Reader<'_, '_> {
         label: &str,
         known: impl IntoIterator<Item = &'n str>,
     ) {
+        // A place is found by walking there, so of very many unknown keys not each is told.
+        if self.notices.len() >= MOST_UNKNOWN {
+            return;
+        }
         let known: Vec<&str> = known.into_iter().collect();
         let message = format!("`{}` is no key or section of a design file", shortened(label));
         let notice = self.source.mark(key.span()).error(UNKNOWN_KEY, message);

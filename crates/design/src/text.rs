@@ -69,7 +69,8 @@ impl<'a> Source<'a> {
             line: number(before.matches('\n').count()),
             column: number(in_line),
         };
-        let excerpt = line.is_char_boundary(end).then(|| Excerpt { text: line.into(), start, end });
+        let is_whole = line.is_char_boundary(start) && line.is_char_boundary(end);
+        let excerpt = is_whole.then(|| Excerpt::of_line(line, start, end));
         Mark { place, excerpt }
     }
 

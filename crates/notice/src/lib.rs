@@ -61,6 +61,34 @@ pub struct Excerpt {
     pub end: usize,
 }
 
+impl Excerpt {
+    /// Characters that are shown before, and from, where the marked part begins.
+    const REACH: usize = 80;
+
+    /// The part of a line round the bytes from `start` to `end`, cut where the line is long. A control
+    /// character shows as `?`: it would act on a terminal.
+    ///
+    /// ```
+    /// let line = format!("{}= 5", "x".repeat(1000));
+    /// let excerpt = notice::Excerpt::of_line(&line, 1002, 1003);
+    /// assert!(excerpt.text.len() < 200);
+    /// assert_eq!(&excerpt.text[excerpt.start..excerpt.end], "5");
+    /// ```
+    pub fn of_line(line: &str, start: usize, end: usize) -> Self {
+        let before = line.get(..start).unwrap_or_default();
+        let from = before.char_indices().rev().nth(Self::REACH - 1).map_or(0, |(at, _)| at);
+        let behind = line.get(start..).unwrap_or_default();
+        let to = behind.char_indices().nth(Self::REACH).map_or(line.len(), |(at, _)| start + at);
+        // One byte stands for one byte, so that the marked part stays where it is.
+        let shown = |c: char| if c.is_ascii_control() && c != '\t' { '?' } else { c };
+        Self {
+            text: line.get(from..to).unwrap_or_default().chars().map(shown).collect(),
+            start: start - from,
+            end: end.min(to).max(start) - from,
+        }
+    }
+}
+
 /// One fault or doubt about an input.
 #[derive(Debug, Clone, PartialEq, Eq)]
 pub struct Notice {

@@ -12,7 +12,10 @@ use std::ops::Range;
 /// How many warnings of one kind about one file are told in full where not all are.
 pub const FEW: usize = 3;
 
-/// Which warnings are told in full. Errors always are.
+/// At most so many errors are told in full: nobody reads on, and a damaged file may have a million.
+pub const MOST_ERRORS: usize = 2000;
+
+/// Which warnings are told in full. Errors are, up to [`MOST_ERRORS`].
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
 pub enum Warnings {
     /// Every one.
@@ -45,8 +48,12 @@ pub fn render(notices: &[Notice], warnings: Warnings, look: &Look) -> String {
         let (file, code) = kind;
         text += &look.text(&format!("warning[{code}]: {more} more of this kind in {file}\n\n"));
     }
-    of(Severity::Error).for_each(|error| text += &rendered(error, look));
-    let (errors, doubts) = (of(Severity::Error).count(), told.values().sum::<usize>());
+    let errors = of(Severity::Error).count();
+    of(Severity::Error).take(MOST_ERRORS).for_each(|error| text += &rendered(error, look));
+    if errors > MOST_ERRORS {
+        text += &format!("error: {} more errors\n\n", errors - MOST_ERRORS);
+    }
+    let doubts = told.values().sum::<usize>();
     let count = |n: usize, what: &str| match n {
         0 => None,
         1 => Some(format!("1 {what}")),

@@ -4,9 +4,6 @@ use std::ops::Range;
 
 use notice::{Excerpt, Notice, Place};
 
-/// The longest excerpt, in characters on either side of where the marked part begins.
-const EXCERPT_REACH: usize = 80;
-
 /// The longest text that a message quotes, in characters.
 const QUOTED: usize = 60;
 
@@ -94,7 +91,7 @@ impl<'a> Source<'a> {
                 line: u32::try_from(line).unwrap_or(u32::MAX),
                 column: u32::try_from(column).unwrap_or(u32::MAX),
             },
-            excerpt: Some(excerpt(text, start, stop)),
+            excerpt: Some(Excerpt::of_line(text, start, stop)),
         }
     }
 
@@ -122,22 +119,6 @@ pub(crate) fn shortened(text: &str) -> String {
 fn printable(c: char) -> char {
     // One byte stands for one byte, so that the marked part of an excerpt stays where it is.
     if c.is_ascii_control() && c != '\t' { '?' } else { c }
-}
-
-fn excerpt(line: &str, start: usize, stop: usize) -> Excerpt {
-    let from = line
-        .get(..start)
-        .and_then(|before| before.char_indices().rev().nth(EXCERPT_REACH - 1))
-        .map_or(0, |(at, _)| at);
-    let to = line
-        .get(start..)
-        .and_then(|after| after.char_indices().nth(EXCERPT_REACH))
-        .map_or(line.len(), |(at, _)| start + at);
-    Excerpt {
-        text: line.get(from..to).unwrap_or_default().chars().map(printable).collect(),
-        start: start - from,
-        end: stop.min(to) - from,
-    }
 }
 
 /// The greatest character boundary of `text` at or below `at`.
