@@ -225,6 +225,7 @@ fn write(arguments: &Arguments, told: &Substitution, screen: &Screen) -> Result<
                 table::csv::table(&tables::replacements(told)).map_err(|e| defect(&e))?
             }
             Format::Xlsx => workbook::document(&tables::document(told)).map_err(|e| defect(&e))?,
+            Format::Html => return Err(Fault::Defect("substitutes have no page".to_owned())),
             Format::Md => match told.replacements.get(arguments.pick - 1) {
                 Some(mend) => note::note(told, mend).into_bytes(),
                 None => {
