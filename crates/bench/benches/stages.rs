@@ -200,16 +200,23 @@ fn ranking(criterion: &mut Criterion) -> Result<(), SetupError> {
 fn whole(criterion: &mut Criterion) -> Result<(), SetupError> {
     let mut group = criterion.benchmark_group("whole");
     group.sample_size(10).measurement_time(Duration::from_secs(3));
-    let made = Made::of(100)?;
-    let sheet = made.sheet("fixed-12v.toml")?;
-    let eligible = eligible(&sheet, &made.shop, false, &mut Vec::new());
-    let problem: Problem<'_> = eligible.problem();
-    group.bench_function(BenchmarkId::new("front", 100), |b| {
-        b.iter(|| select::front::front(&problem).map_or(0, |front| front.len()));
-    });
-    group.bench_function(BenchmarkId::new("count", 100), |b| {
-        b.iter(|| select::count::count(&problem, &|_| ()).feasible);
-    });
+    for rows in [100, 1_000] {
+        let made = Made::of(rows)?;
+        for name in ["fixed-12v.toml", "adjustable-5-15v.toml"] {
+            let sheet = made.sheet(name)?;
+            let eligible = eligible(&sheet, &made.shop, false, &mut Vec::new());
+            let problem: Problem<'_> = eligible.problem();
+            let name = name.trim_end_matches(".toml");
+            group.bench_function(BenchmarkId::new(format!("front/{name}"), rows), |b| {
+                b.iter(|| select::front::front(&problem).map_or(0, |front| front.len()));
+            });
+            if rows == 100 && !sheet.rail.is_adjustable() {
+                group.bench_function(BenchmarkId::new(format!("count/{name}"), rows), |b| {
+                    b.iter(|| select::count::count(&problem, &|_| ()).feasible);
+                });
+            }
+        }
+    }
     group.finish();
     Ok(())
 }
