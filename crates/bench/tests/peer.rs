@@ -3,6 +3,7 @@
 //! `peer/duckdb_join.py` says what the database works out by itself and what it is given.
 
 #[path = "../../cli/tests/common/tool.rs"]
+#[allow(dead_code)] // it uses some of it
 mod tool;
 
 use bench::large::{Hard, Order, Sizes, rail_sheets, write_shop};
