@@ -1,6 +1,6 @@
 //! Why a part is not on the list, or where it is.
 
-use crate::cell::{CellCure, cures_in_company};
+use crate::cell::{CellCure, cell_cures};
 use crate::change::{KeyChanges, changes};
 use crate::check_set::CheckSet;
 use crate::filled::{Cells, slots_of};
@@ -91,7 +91,7 @@ pub struct Infeasible {
     pub nearest: Vec<NamedMiss>,
     /// What moving each key of the sheet by itself does.
     pub keys: Vec<KeyChanges>,
-    /// Cells of the part that would let it in, other parts being those of one of `nearest`.
+    /// Cells of the part that would let it in, whatever stands beside it.
     pub cells: Vec<CellCure>,
 }
 
@@ -280,7 +280,7 @@ fn infeasible(
     let fails_always = |check: &Check| survey.holding(CheckSet::of(&[*check])).is_none();
     let cells = Cells::of(rows.shop, entry.kind, entry.file, entry.line);
     let boards = rows.sheet.boards;
-    let cured = cures_in_company(&cells, entry.kind, slot, pinned, &nearest, boards)?;
+    let cured = cell_cures(&cells, entry.kind, slot, pinned, boards);
     Ok(Reason::Infeasible(Box::new(Infeasible {
         alone: alone.iter().filter(fails_always).collect(),
         nearest: nearest.iter().map(|miss| NamedMiss::of(miss, pinned)).collect(),

@@ -23,8 +23,9 @@ pub(crate) struct Standing<'r, 'p> {
 /// Scores nearer to each other than this share may tie at ten digits.
 const NEAR: f64 = 1e-9;
 
-/// Rows of the first list of parts; twice as many follow as long as there may be more.
-const FIRST_ROWS: usize = 64;
+/// Rows of the first list of parts: rows behind the last that may be on the list are dear to find, for
+/// parts tie there. Twice as many follow as long as there may be more.
+const FIRST_ROWS: usize = 1;
 
 impl<'r, 'p> Standing<'r, 'p> {
     /// The list of the first `top`.
@@ -90,7 +91,7 @@ impl<'r, 'p> Standing<'r, 'p> {
             if !goes_on || rows.len() < most || most >= parts {
                 return Ok(rows);
             }
-            most *= 4;
+            most *= 2;
         }
     }
 

@@ -152,7 +152,7 @@ fn told_infeasible(
     for cure in &infeasible.cells {
         let side = if cure.value > cure.from { "at least" } else { "at most" };
         line(&format!(
-            "Cell `{}` {} → {side} {}: it would be a candidate with {}.",
+            "Cell `{}` {} → {side} {}: then it is in a candidate, for one {}.",
             cure.column,
             words::figure(cure.from, cure.unit),
             words::figure(rounded(cure.value), cure.unit),
@@ -160,7 +160,7 @@ fn told_infeasible(
         ));
     }
     if infeasible.cells.is_empty() {
-        line("No single figure of its row would let it in beside these parts.");
+        line("No single figure of its row would let it in, whatever stands beside it.");
     }
     let changes = words::key_changes(&infeasible.keys, &sheet.rail, currency, 3 * INDENT, look);
     if changes.is_empty() {

@@ -190,11 +190,10 @@ pub(super) fn keys_in_vain(keys: &[KeyChanges], look: &Look) -> String {
 /// How changes are found and what their words mean.
 pub(super) fn how_changes_are_found(look: &Look) -> String {
     let how = format!(
-        "Values are looked for on a grid going away from the sheet's own, then refined between \
-         neighbours, with at most {MOST_PROBES} searches on each side of a key. Exact: the named check \
-         holds from this value on, rounded to the side that holds, and nothing qualifies just short of \
-         it. Bracket: both ends were searched. A narrow range between two values of the grid may be \
-         missed."
+        "Exact: the named check holds from this value on, rounded to the side that holds, and nothing \
+         qualifies just short of it. Bracket: nothing qualifies at its other end, and no one check \
+         decides. Values are tried on a grid going away from the sheet's own, at most {MOST_PROBES} on \
+         each side; a narrow range between two of them may be missed."
     );
     look.paragraph(&how, INDENT, INDENT)
 }
