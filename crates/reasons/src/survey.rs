@@ -44,7 +44,7 @@ const MOST_STEPS: usize = 14;
 const NEAR: f64 = 1e-3;
 
 /// Sets of failing checks with more members than this are not looked for.
-const MOST_FAILING: usize = 4;
+pub const MOST_FAILING: usize = 4;
 
 impl<'a> Survey<'a> {
     /// Of a problem.

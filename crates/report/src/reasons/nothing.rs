@@ -8,7 +8,7 @@ use reasons::losses::SlotLosses;
 use reasons::nothing::Nothing;
 use reasons::remedy::Remedy;
 use reasons::requirement::Requirement;
-use reasons::survey::Miss;
+use reasons::survey::{MOST_FAILING, Miss};
 use select::problem::Problem;
 use sheet::Sheet;
 
@@ -140,7 +140,9 @@ fn misses(reasons: &Nothing, problem: &Problem<'_>, look: &Look) -> String {
         let told = format!("{parts}, which fails {}.", words::failures(miss.failures()));
         look.paragraph(&told, INDENT, 2 * INDENT)
     };
-    reasons.nearest.iter().filter(|miss| !told(miss)).map(tell).collect()
+    // One that fails in more is near to nothing.
+    let is_near = |miss: &&Miss| miss.failing.len() <= MOST_FAILING;
+    reasons.nearest.iter().filter(is_near).filter(|miss| !told(miss)).map(tell).collect()
 }
 
 fn remedies(remedies: &[Remedy], look: &Look) -> String {
