@@ -91,8 +91,8 @@ fn sheet(table: &Table) -> Result<Worksheet, XlsxError> {
     let last_column = table.columns.len().saturating_sub(1) as u16;
     sheet.set_freeze_panes(1, 0)?;
     sheet.autofilter(0, 0, last, last_column)?;
-    // Printed on paper: lying, as wide as one page, with the headings on each.
-    sheet.set_landscape().set_print_fit_to_pages(1, 0).set_repeat_rows(0, 0)?;
+    // Printed on paper: lying, on as few pages side by side as can be read, with the headings on each.
+    sheet.set_landscape().set_print_fit_to_pages(looks.pages_wide(), 0).set_repeat_rows(0, 0)?;
     Ok(sheet)
 }
 

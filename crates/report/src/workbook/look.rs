@@ -12,8 +12,11 @@ const LEAST_WIDTH: usize = 8;
 /// A column is at most so wide; longer texts are broken into lines.
 const MOST_WIDTH: usize = 60;
 
+/// Characters that a lying page of A4 or Letter holds in print of about six points.
+const MOST_ON_PAPER: f64 = 220.0;
+
 /// Room for the cell's edges and the filter's button.
-const EDGES: usize = 3;
+const EDGES: usize = 4;
 
 /// The formats of a table's sheet.
 pub(super) struct Looks<'t> {
@@ -26,7 +29,8 @@ pub(super) struct Looks<'t> {
 
 impl<'t> Looks<'t> {
     pub(super) fn new(table: &'t Table) -> Self {
-        let text = Format::new().set_text_wrap().set_align(FormatAlign::Top);
+        // Indented, or it would touch a number in the column before.
+        let text = Format::new().set_text_wrap().set_align(FormatAlign::Top).set_indent(1);
         Self {
             table,
             words: Words::new(table),
@@ -40,7 +44,8 @@ impl<'t> Looks<'t> {
     pub(super) fn heading(&self, column: &Column) -> Format {
         let side = if column.is_number() { FormatAlign::Right } else { FormatAlign::Left };
         let heading = Format::new().set_bold().set_text_wrap().set_align(FormatAlign::Bottom);
-        heading.set_align(side).set_border_bottom(FormatBorder::Thin)
+        let indent = u8::from(!column.is_number());
+        heading.set_align(side).set_indent(indent).set_border_bottom(FormatBorder::Thin)
     }
 
     pub(super) fn text(&self, text: &str) -> &Format {
@@ -80,6 +85,14 @@ impl<'t> Looks<'t> {
                 }
             }
         }
+    }
+
+    /// Sheets of paper that lie side by side, so that print stays large enough to be read.
+    pub(super) fn pages_wide(&self) -> u16 {
+        let width: f64 = (0..self.table.columns.len()).map(|place| self.width(place)).sum();
+        let pages = (width / MOST_ON_PAPER).ceil();
+        // A table has far fewer columns than pages can be counted.
+        pages.max(1.0) as u16
     }
 
     /// The width of a column in characters, so that it can be read.
