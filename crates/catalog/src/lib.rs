@@ -9,7 +9,7 @@
 //! | [`column`](mod@column) | what can be said about a column |
 //! | [`kind`] | the six catalogs, their files and columns |
 //! | [`shop`] | what has been read: rows, unproven parts, the files themselves |
-//! | [`price`], [`status`] | price breaks; life-cycle words |
+//! | [`price`] | price breaks |
 //! | [`read`] | reading a folder of catalogs |
 //! | [`plausible`] | values that can be read but hardly be meant |
 //! | [`reference`](mod@reference) | the reference page of all columns |
@@ -25,7 +25,6 @@ pub mod read;
 pub mod reference;
 pub mod shop;
 pub mod start;
-pub mod status;
 
 mod cells;
 mod decimal;
@@ -37,6 +36,7 @@ mod near;
 mod source;
 mod tables;
 
+pub use circuit::status::Status;
 pub use column::Column;
 pub use kind::Kind;
 pub use price::Price;
@@ -45,4 +45,3 @@ pub use shop::{
     Catalog, FileRead, LeftOut, Row, Shop, Sink, Unproven, lacks_for_fault, lacks_for_sink,
     leaves_no_resistance,
 };
-pub use status::Status;

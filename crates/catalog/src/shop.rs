@@ -6,8 +6,8 @@ use crate::kind::Kind;
 use crate::locate;
 use crate::price::Price;
 use crate::source::Source;
-use crate::status::Status;
 use circuit::parts::{Amplifier, Heatsink, Pot, ResistorLine, Transistor, Zener};
+use circuit::status::Status;
 use compact_str::CompactString;
 
 /// Everything that can be bought: one catalog of each kind.

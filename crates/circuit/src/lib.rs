@@ -21,6 +21,7 @@
 //! | [`drive`] | the amplifier driving the transistor |
 //! | [`assembly`] | all parts together: every check in page order |
 //! | [`merit`] | efficiency, stress, margin, slack |
+//! | [`slot`], [`status`] | the words for what parts are chosen for, and for where they stand in their life |
 //!
 //! Units are SI, temperatures °C, thermal resistances °C/W; field names end in their unit.
 
@@ -37,3 +38,4 @@ pub mod rail;
 pub mod reference;
 pub mod resistor;
 pub mod slot;
+pub mod status;

@@ -98,6 +98,7 @@ impl<'a> Desk<'a> {
         let name = path.display().to_string();
         let read = read_text(path, notices).and_then(|text| {
             let sheet = sheet::read(&name, &text, &self.shop_file, self.set, notices)?;
+            eligible::doubt_names(&sheet, &self.shop, notices);
             Some(SheetRead { name, text, sheet })
         });
         self.sheets.insert(path.to_owned(), read);

@@ -1,10 +1,13 @@
 //! Sheet, shop file and catalogs, read from their files.
 
 use crate::arguments::Catalogs;
+use crate::command::Fault;
+use crate::screen::Screen;
 use catalog::kind::{is_known_column, nearest_column};
 use catalog::{ReadOptions, Shop, read_folder};
 use eligible::{Eligible, eligible};
 use notice::{Notice, Place, has_errors};
+use report::notices::Warnings;
 use report::shortlist::Files;
 use sheet::{Sheet, ShopFile};
 use std::fs::File;
@@ -80,6 +83,25 @@ impl Loaded {
             shop: self.shop_bytes.as_deref().map(|bytes| (SHOP_FILE, bytes)),
         }
     }
+}
+
+/// Reads a sheet with the shop that serves it, and tells what there is to tell. What comes back is kept
+/// until the process ends; as a fault, that an input is not as it should be.
+pub(crate) fn sheet_and_parts(
+    sheet: &Path,
+    catalogs: &Catalogs,
+    set: &[String],
+    screen: &Screen,
+    change: impl FnOnce(&mut Sheet),
+) -> Result<(&'static Loaded, Eligible<'static>), Fault> {
+    let mut notices = Vec::new();
+    let loaded = Loaded::read(sheet, catalogs, set, &mut notices).map(|mut loaded| {
+        change(&mut loaded.sheet);
+        loaded.for_good()
+    });
+    let eligible = loaded.and_then(|loaded| loaded.eligible(&mut notices));
+    screen.tell(&notices, Warnings::FewOfAKind);
+    loaded.zip(eligible).ok_or(Fault::Told)
 }
 
 /// The shop file with what it says.

@@ -291,3 +291,15 @@ fn sample_designs_do_what_their_page_says() {
         assert!(told.out.contains(fact), "{fact}: {}", told.out);
     }
 }
+
+#[test]
+fn pins_and_bans_that_mean_nothing_are_told_and_fail_no_design() {
+    let sample = repository("");
+    let design = "catalogs-sample/designs/tide-gauge-kept.toml";
+    let set = ["--set", "parts.ban=Nowhere/NONE-1", "--set", "parts.use.zener=QK9V1-22"];
+    let run =
+        run(&sample, &[&["verify", design, "--catalogs", "catalogs-sample"], &set[..]].concat());
+    assert!(run.err.contains("warning[banned-part-unknown]"), "{}", run.err);
+    assert!(run.err.contains("warning[pinned-part-unknown]"), "{}", run.err);
+    assert!(!run.err.contains("error["), "{}", run.err);
+}

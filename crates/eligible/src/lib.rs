@@ -11,7 +11,7 @@ use circuit::parts::{Amplifier, Pot, ResistorLine, Transistor, Zener};
 use circuit::slot::Slot;
 use names::Named;
 pub use names::kind_of;
-use notice::Notice;
+use notice::{Notice, Severity};
 use rayon::prelude::*;
 use select::problem::{Part, PassPart, Problem, SinkPart, Weights};
 use sheet::Sheet;
@@ -238,6 +238,13 @@ fn lacking<'a, T>(
             });
         }
     }
+}
+
+/// Warns of pins and bans of a sheet that mean nothing, where nothing is chosen by them.
+pub fn doubt_names(sheet: &Sheet, shop: &Shop, notices: &mut Vec<Notice>) {
+    let mut found = Vec::new();
+    Named::new(sheet, shop, &mut found);
+    notices.extend(found.into_iter().map(|n| Notice { severity: Severity::Warning, ..n }));
 }
 
 /// The name of a catalog's file.

@@ -16,7 +16,7 @@ use eligible::{Eligible, eligible};
 use select::SearchError;
 use select::problem::Problem;
 use select::ranking::{NO_SPREAD, shortlist};
-use sheet::{Sheet, keys};
+use sheet::Sheet;
 
 /// Rows of a list where nothing else is asked for.
 pub const USUAL_ROWS: usize = 10;
@@ -186,7 +186,7 @@ fn barred_by(entry: &Entry, slot: Slot, rows: &Eligible<'_>) -> Vec<BarredBy> {
     let (sheet, shop) = (rows.sheet, rows.shop);
     let lifted = {
         let mut sheet: Sheet = sheet.clone();
-        sheet.parts.allow_status = keys::STATUS_WORDS.map(str::to_owned).to_vec();
+        sheet.parts.allow_status = circuit::status::Status::WORDS.map(str::to_owned).to_vec();
         sheet.parts.need_stock = false;
         sheet.parts.pins = Default::default();
         sheet.parts.bans = Vec::new();

@@ -6,6 +6,7 @@
 
 use circuit::rail::Derating;
 use circuit::slot::Slot;
+use circuit::status::Status;
 use quantity::notation::Unit;
 
 use crate::bounds::{Bounds, figure};
@@ -315,7 +316,7 @@ keys! {
          no knee")
         .or(Fallback::Number(1.5));
 
-    PARTS_ALLOW_STATUS = Key::new("parts.allow_status", Unit::Plain, Kind::Words(&STATUS_WORDS),
+    PARTS_ALLOW_STATUS = Key::new("parts.allow_status", Unit::Plain, Kind::Words(&Status::WORDS),
         "life-cycle words of the parts that may be chosen")
         .or(Fallback::Texts(&["active", "unknown"]));
     PARTS_NEED_STOCK = Key::new("parts.need_stock", Unit::Plain, Kind::Flag,
@@ -436,10 +437,6 @@ pub const COLUMNS_SECTION: &str = "columns";
 
 /// The keys and sections that only a shop file has.
 pub const SHOP_ONLY: [&str; 3] = ["currency", POLICY_SECTION, COLUMNS_SECTION];
-
-/// The life-cycle words of catalogs, as `parts.allow_status` takes them.
-pub const STATUS_WORDS: [&str; 5] =
-    ["active", "not-recommended", "last-buy", "obsolete", "unknown"];
 
 /// A rule between the figures of two keys.
 #[derive(Debug, Clone, Copy)]

@@ -54,7 +54,7 @@ pub struct Weights {
 /// Which parts may be chosen.
 #[derive(Debug, Clone)]
 pub struct PartRules {
-    /// Life-cycle words in lower case, of [`keys::STATUS_WORDS`].
+    /// Life-cycle words in lower case, of [`circuit::status::Status::WORDS`].
     pub allow_status: Vec<String>,
     /// A part needs as many pieces in stock as there are boards.
     pub need_stock: bool,

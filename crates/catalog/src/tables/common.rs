@@ -2,7 +2,7 @@
 
 use super::columns;
 use crate::column::{Cell, Column, Need, Range, Unit, number};
-use crate::status::Status;
+use circuit::status::Status;
 
 const NUMBER_FROM_ZERO: Cell = number(Unit::Plain, Range::FROM_ZERO);
 

@@ -2,12 +2,11 @@
 
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing};
-use crate::load::Loaded;
+use crate::load::sheet_and_parts;
 use crate::progress::watched;
 use crate::screen::Screen;
 use clap::Args;
 use reasons::gaps::gaps;
-use report::notices::Warnings;
 use std::path::PathBuf;
 
 /// Tell which blank cells of catalogs are worth filling in for a rail
@@ -42,11 +41,8 @@ Exit status: 0 where the question is answered, 2 where the input or the command 
 
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
-    let mut notices = Vec::new();
-    let loaded = Loaded::read(&arguments.sheet, &arguments.catalogs, &arguments.set, &mut notices);
-    let eligible = loaded.as_ref().and_then(|loaded| loaded.eligible(&mut notices));
-    screen.tell(&notices, Warnings::FewOfAKind);
-    let Some(eligible) = eligible else { return Err(Fault::Told) };
+    let (_, eligible) =
+        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |_| {})?;
     let top = usize::try_from(arguments.top).unwrap_or(usize::MAX);
     let found = watched("searching", screen.shows_progress(), |_| gaps(&eligible, top))
         .map_err(Fault::Search)?;

@@ -3,7 +3,7 @@
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing, SpreadLimit};
 use crate::files::{Format, Target, check, folder_of, write_whole};
-use crate::load::Loaded;
+use crate::load::sheet_and_parts;
 use crate::order_lines::of_candidate;
 use crate::page::{self, Listed};
 use crate::progress::watched;
@@ -12,7 +12,6 @@ use clap::{Args, ValueEnum};
 use eligible::Eligible;
 use report::certificate::Asked;
 use report::dossier::shortlist::{Ordered, document};
-use report::notices::Warnings;
 use report::shortlist::{Shortlist, lost};
 use report::{design, json, markdown, ranking_csv, terminal, workbook};
 use select::candidate::Candidate;
@@ -136,16 +135,12 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     let others = [arguments.as_file.as_deref(), arguments.certificate.as_deref()];
     check(outputs.chain(others.into_iter().flatten()), arguments.overwrite)?;
 
-    let mut notices = Vec::new();
-    let mut loaded =
-        Loaded::read(&arguments.sheet, &arguments.catalogs, &arguments.set, &mut notices);
-    if let (Some(loaded), Some(criterion)) = (&mut loaded, arguments.by) {
-        rank_by(criterion, &mut loaded.sheet);
-    }
-    let loaded = loaded.map(Loaded::for_good);
-    let eligible = loaded.and_then(|loaded| loaded.eligible(&mut notices));
-    screen.tell(&notices, Warnings::FewOfAKind);
-    let (Some(loaded), Some(eligible)) = (loaded, eligible) else { return Err(Fault::Told) };
+    let (loaded, eligible) =
+        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |sheet| {
+            if let Some(criterion) = arguments.by {
+                rank_by(criterion, sheet);
+            }
+        })?;
 
     let problem = eligible.problem();
     let candidates = found(arguments, &problem, screen)?;

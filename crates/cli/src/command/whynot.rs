@@ -2,7 +2,7 @@
 
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing};
-use crate::load::Loaded;
+use crate::load::sheet_and_parts;
 use crate::progress::watched;
 use crate::screen::Screen;
 use clap::Args;
@@ -11,7 +11,6 @@ use reasons::names::{Entry, Unknown, look_up};
 use reasons::nothing::why_nothing;
 use reasons::part::why_not;
 use reasons::probe::ShopMarket;
-use report::notices::Warnings;
 use select::ranking::{NO_SPREAD, shortlist};
 use std::path::PathBuf;
 
@@ -46,11 +45,8 @@ Exit status: 0 where the question is answered, 2 where the input or the command 
 
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
-    let mut notices = Vec::new();
-    let loaded = Loaded::read(&arguments.sheet, &arguments.catalogs, &arguments.set, &mut notices);
-    let eligible = loaded.as_ref().and_then(|loaded| loaded.eligible(&mut notices));
-    screen.tell(&notices, Warnings::FewOfAKind);
-    let Some(eligible) = eligible else { return Err(Fault::Told) };
+    let (_, eligible) =
+        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |_| {})?;
     let text = match arguments.part.as_slice() {
         [] => about_nothing(&eligible, screen)?,
         parts => about_parts(&eligible, parts, screen)?,

@@ -1,4 +1,4 @@
-//! Life-cycle words.
+//! Life-cycle words: of catalogs, of the sheets that let parts in by them, and of results.
 
 use std::fmt;
 
