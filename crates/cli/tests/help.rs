@@ -88,3 +88,26 @@ fn help_keeps_to_a_hundred_columns() {
         assert!(widest.chars().count() <= 100, "{words:?}: {widest}");
     }
 }
+
+/// A reader that has seen enough, as `head` or a pager that is left, is no fault of any command.
+#[cfg(unix)]
+#[test]
+fn a_closed_pipe_is_a_normal_end_of_every_command() {
+    let program = Path::new(env!("CARGO_BIN_EXE_railwright"));
+    let commands = commands();
+    std::thread::scope(|scope| {
+        for words in &commands {
+            scope.spawn(move || {
+                let Some(example) = examples(&help_of(words)).into_iter().next() else { return };
+                let session = Session::new(&root(), program).expect("a session");
+                // Until the reader is gone for certain, nothing is written.
+                let ends = format!(
+                    "{{ sleep 0.2; {example}; echo \"ended $?\" >ended; }} | true; cat ended"
+                );
+                let ran = session.run(&ends).expect("a shell");
+                let is_normal = ran.said.contains("ended 0") || ran.said.contains("ended 1");
+                assert!(is_normal && !ran.said.contains("panicked"), "{example}: {}", ran.said);
+            });
+        }
+    });
+}
