@@ -9,6 +9,9 @@ use std::io::{self, IsTerminal, Write};
 /// Columns of text where nothing tells how many there are.
 const USUAL_WIDTH: usize = 80;
 
+/// Lines of any length.
+const NO_END: usize = 100_000;
+
 /// Fewer columns than this can't hold a table; lines are then broken by the terminal.
 const LEAST_WIDTH: usize = 40;
 
@@ -25,14 +28,15 @@ pub(crate) struct Screen {
 impl Screen {
     /// The screen as the user wants it.
     pub(crate) fn new(showing: Showing) -> Self {
-        let look = |is_terminal: bool| Look {
-            width: width(is_terminal),
+        let look = |is_terminal: bool, usual_width: usize| Look {
+            width: width(is_terminal, usual_width),
             colour: is_terminal && colours_are_welcome(),
             ascii: showing.ascii,
         };
         Self {
-            data: look(io::stdout().is_terminal()),
-            notes: look(io::stderr().is_terminal()),
+            data: look(io::stdout().is_terminal(), USUAL_WIDTH),
+            // In a file or pipe a note is one line, as scripts that look for it want it.
+            notes: look(io::stderr().is_terminal(), NO_END),
             quiet: showing.quiet,
         }
     }
@@ -73,11 +77,11 @@ impl Screen {
 }
 
 /// A terminal tells its width; for a pipe `COLUMNS` may.
-fn width(is_terminal: bool) -> usize {
+fn width(is_terminal: bool, usual: usize) -> usize {
     let of_terminal = || terminal_size::terminal_size().map(|(width, _)| usize::from(width.0));
     let of_variable = || std::env::var("COLUMNS").ok()?.trim().parse().ok();
     let width = if is_terminal { of_terminal() } else { of_variable() };
-    width.unwrap_or(USUAL_WIDTH).max(LEAST_WIDTH)
+    width.unwrap_or(usual).max(LEAST_WIDTH)
 }
 
 /// `NO_COLOR` with any value but an empty one says no. Source: no-color.org.

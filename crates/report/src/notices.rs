@@ -67,6 +67,15 @@ pub fn render(notices: &[Notice], warnings: Warnings, look: &Look) -> String {
     text
 }
 
+/// Columns before a note: room for a line number, and the mark `=`.
+const NOTE_BEGINS: usize = 8;
+
+/// Columns before the text of a note, where it goes on on another line.
+const NOTE_INDENT: usize = 10;
+
+/// Columns before the text of a line that is shown, with its number.
+const LINE_BEGINS: usize = 10;
+
 /// One notice, ending in a blank line.
 fn rendered(notice: &Notice, look: &Look) -> String {
     let line = Line::of(notice, look);
@@ -75,11 +84,14 @@ fn rendered(notice: &Notice, look: &Look) -> String {
         Severity::Warning => Weight::Warning,
     };
     let mut diagnostic = Diagnostic::new(severity).with_code(notice.code);
-    diagnostic.message = match line {
+    let message = match line {
         // Nothing else would tell the place.
-        None => look.text(&format!("{}: {}", notice.place, notice.message)),
-        Some(_) => look.text(&notice.message),
+        None => format!("{}: {}", notice.place, notice.message),
+        Some(_) => notice.message.clone(),
     };
+    // `warning[code]: ` stands before it.
+    let prefix = "warning[]: ".len() + notice.code.len();
+    diagnostic.message = look.paragraph(&message, prefix, 2).trim().to_owned();
     if let Some(line) = &line {
         diagnostic.labels.push(Label::primary((), line.marked.clone()));
     }
@@ -87,7 +99,9 @@ fn rendered(notice: &Notice, look: &Look) -> String {
     for (name, note) in notes {
         if let Some(note) = note {
             let quoted = if name == "found" { format!("`{note}`") } else { note.clone() };
-            diagnostic.notes.push(look.text(&format!("{name:<9} {quoted}")));
+            let beside = Look { width: look.width.saturating_sub(NOTE_BEGINS), ..*look };
+            let note = beside.paragraph(&format!("{name:<9} {quoted}"), 0, NOTE_INDENT);
+            diagnostic.notes.push(note.trim_end().to_owned());
         }
     }
     let mut config = Config::default();
@@ -122,6 +136,8 @@ impl Line {
         let before = look.text(text.get(..*start)?);
         let marked = look.text(text.get(*start..*end)?);
         let after = look.text(text.get(*end..)?);
+        let room = look.width.saturating_sub(LINE_BEGINS + marked.chars().count());
+        let (before, after) = cut(&before, &after, room, look.text("…").as_str());
         Some(Self {
             file: look.text(&notice.place.file),
             number: notice.place.line as usize,
@@ -130,6 +146,27 @@ impl Line {
             text: [before, marked, after].concat().replace('\n', " "),
         })
     }
+}
+
+/// What stands before and behind a mark, cut to so many columns where both are longer: half of it for
+/// each, and what one leaves for the other.
+fn cut(before: &str, after: &str, room: usize, mark: &str) -> (String, String) {
+    let (left, right) = (before.chars().count(), after.chars().count());
+    let of_left = left.min(room.saturating_sub(right.min(room / 2)));
+    let of_right = right.min(room.saturating_sub(of_left));
+    let shorter = |columns: usize| columns.saturating_sub(mark.chars().count());
+    let before = match of_left < left {
+        true => {
+            let kept: String = before.chars().skip(left - shorter(of_left)).collect();
+            format!("{mark}{kept}")
+        }
+        false => before.to_owned(),
+    };
+    let after = match of_right < right {
+        true => after.chars().take(shorter(of_right)).collect::<String>() + mark,
+        false => after.to_owned(),
+    };
+    (before, after)
 }
 
 impl<'a> Files<'a> for Line {
@@ -189,6 +226,26 @@ mod tests {
         let shown = lines.iter().position(|l| l.contains("ZQ5V1")).unwrap();
         let column = lines[shown].find("5,1").unwrap();
         assert_eq!(lines[shown + 1].find("^^^"), Some(column), "{text}");
+    }
+
+    #[test]
+    fn a_narrow_terminal_gets_shorter_lines() {
+        let mut notice = cell();
+        notice.message = "a long message ".repeat(8);
+        notice.expected = Some("one of many words ".repeat(6));
+        let line = format!("{}MARK{}", "before ".repeat(20), "after ".repeat(20));
+        notice.excerpt = Some(Excerpt { text: line, start: 140, end: 144 });
+        for (width, ascii) in [(40, false), (60, true), (80, false)] {
+            let text =
+                render(&[notice.clone()], Warnings::Every, &Look { width, colour: false, ascii });
+            let lines: Vec<&str> = text.lines().collect();
+            let widest = lines.iter().map(|l| l.chars().count()).max().unwrap();
+            assert!(widest <= width, "{widest} of {width}: {text}");
+            let shown = lines.iter().position(|l| l.contains("MARK")).unwrap();
+            let column =
+                |n: usize, what: &str| lines[n].split(what).next().map(|s| s.chars().count());
+            assert_eq!(column(shown, "MARK"), column(shown + 1, "^^^^"), "{text}");
+        }
     }
 
     #[test]
