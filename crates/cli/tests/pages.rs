@@ -1,5 +1,6 @@
-//! The output that pages show is what the program prints.
+//! The output and the pictures that pages show are what the program prints and draws.
 
+use docs_check::drawn::{DRAWINGS, FOLDER};
 use docs_check::page;
 use docs_check::root;
 use docs_check::session::Session;
@@ -22,4 +23,31 @@ fn the_output_that_pages_show_is_current() {
         );
     }
     assert!(shown > 0, "no page shows output: is the test looking?");
+}
+
+#[test]
+fn the_pictures_that_pages_show_are_current() {
+    let session = Session::new(&root(), Path::new(env!("CARGO_BIN_EXE_railwright")));
+    let session = session.expect("a session");
+    for drawing in DRAWINGS {
+        let path = root().join(FOLDER).join(drawing.file);
+        let now = drawing.now(&session).expect("the picture");
+        assert!(
+            std::fs::read(&path).is_ok_and(|shown| shown == now),
+            "{} shows another picture than the program draws; look at it and run \
+             `cargo run -p docs-check -- renew`",
+            path.display()
+        );
+    }
+}
+
+#[test]
+fn every_picture_that_is_kept_is_shown_on_a_page() {
+    let pages = page::all(&root()).expect("every page can be read");
+    let links: Vec<String> = pages.iter().flat_map(page::Page::links).collect();
+    for entry in std::fs::read_dir(root().join(FOLDER)).expect("the folder of pictures") {
+        let file = entry.expect("an entry").file_name().to_string_lossy().into_owned();
+        assert!(links.iter().any(|link| link.ends_with(&format!("pictures/{file}"))), "{file}");
+        assert!(DRAWINGS.iter().any(|d| d.file == file), "nothing draws {file}");
+    }
 }

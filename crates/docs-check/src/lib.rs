@@ -11,11 +11,13 @@
 //! | [`generated`] | the parts of pages that are made from declarations |
 //! | [`code`] | where a function stands in the sources |
 //! | [`manifest`] | the crates of the workspace and what they depend on |
+//! | [`drawn`] | pictures that pages show |
 //! | [`shown`], [`session`] | output that pages show, held against what the program prints |
 //!
 //! It serves tests and writers alone and is no part of the tool.
 
 pub mod code;
+pub mod drawn;
 pub mod generated;
 pub mod manifest;
 pub mod page;

@@ -1,6 +1,7 @@
 //! For writers of the pages: `cargo run -p docs-check -- renew` writes anew what the pages take from the
 //! code, and the output that they show.
 
+use docs_check::drawn::{self, DRAWINGS};
 use docs_check::session::Session;
 use docs_check::{generated, page, root, shown};
 use std::io;
@@ -30,6 +31,15 @@ fn renew(root: &Path) -> io::Result<()> {
     for page in page::all(root)? {
         let session = Session::new(root, &program)?;
         write_if_new(root, &page, &shown::renewed(&page, &session)?)?;
+    }
+    let session = Session::new(root, &program)?;
+    for drawing in DRAWINGS {
+        let path = root.join(drawn::FOLDER).join(drawing.file);
+        let now = drawing.now(&session)?;
+        if std::fs::read(&path).ok().as_ref() != Some(&now) {
+            std::fs::write(&path, now)?;
+            println!("renewed {}/{}", drawn::FOLDER, drawing.file);
+        }
     }
     Ok(())
 }

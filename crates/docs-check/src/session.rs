@@ -48,6 +48,14 @@ impl Session {
         let said = String::from_utf8_lossy(&output.stdout).into_owned();
         Ok(Ran { said, status: output.status.code() })
     }
+
+    /// A file that a command has written.
+    ///
+    /// # Errors
+    /// Where it can't be read.
+    pub fn file(&self, name: &str) -> io::Result<Vec<u8>> {
+        std::fs::read(self.folder.path().join(name))
+    }
 }
 
 /// What came of a command.

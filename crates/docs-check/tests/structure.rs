@@ -90,6 +90,7 @@ fn crates_keep_the_promises_of_their_does_not_sentences() {
         ("design", vec![&PRINTING[..], &FILES, &THREADS]),
         ("reasons", vec![&PRINTING[..], &FILES]),
         ("substitute", vec![&PRINTING[..], &FILES]),
+        ("picture", vec![&PRINTING[..], &FILES, &THREADS]),
         ("report", vec![&PRINTING[..], &THREADS]),
     ]);
     for (name, promise) in promises {
