@@ -1,9 +1,9 @@
 //! A set of parts at its rail, drawn.
 //!
 //! Each picture is an SVG that carries its own words: a title and a description for those who can't see
-//! it, and for programs the axes, bars and points as data attributes in full precision (see
-//! [`frame`](self) and `docs/pictures.md`). Every figure that is drawn comes from
-//! [`circuit`] by way of a [`subject::Subject`]; nothing is calculated here but places on paper.
+//! it, and for programs the axes, bars and points as data attributes in full precision (the page
+//! `docs/pictures.md` says which). Every figure that is drawn comes from [`circuit`] by way of a
+//! [`subject::Subject`]; nothing is calculated here but places on paper.
 //!
 //! | module | what it holds |
 //! |---|---|
