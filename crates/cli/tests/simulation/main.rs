@@ -26,6 +26,7 @@ mod stage;
 use bounds::Bounds;
 use common::{repository, run, tool};
 use corner::Corner;
+use netlist::Swing;
 use ngspice::Operating;
 use serde_json::Value;
 use stage::{Shop, Stage};
@@ -62,9 +63,24 @@ fn candidates(sheet: &str) -> Vec<Value> {
     list["candidates"].as_array().expect("candidates").clone()
 }
 
+/// The operating points at corners. The solver finds its way more easily without the ends of the
+/// amplifier's swing, so they are put in where the drive goes beyond them.
 fn simulated(simulator: &str, stage: &Stage<'_>, corners: &[Corner]) -> Vec<Operating> {
-    let circuits: Vec<String> = corners.iter().map(|corner| netlist::of(stage, corner)).collect();
-    ngspice::operating_points(simulator, &circuits)
+    let circuits = |corners: &[Corner], swing: Swing| -> Vec<String> {
+        corners.iter().map(|corner| netlist::of(stage, corner, swing)).collect()
+    };
+    let mut points = ngspice::operating_points(simulator, &circuits(corners, Swing::Unlimited));
+    let amplifier = stage.amplifier;
+    let is_beyond = |p: &Operating| {
+        p.drive_v < amplifier.swing_low_v || p.drive_v > p.feed_v - amplifier.swing_high_v
+    };
+    let beyond: Vec<usize> = (0..points.len()).filter(|n| is_beyond(&points[*n])).collect();
+    let those: Vec<Corner> = beyond.iter().map(|n| corners[*n]).collect();
+    let limited = ngspice::operating_points(simulator, &circuits(&those, Swing::Limited));
+    for (n, point) in beyond.into_iter().zip(limited) {
+        points[n] = point;
+    }
+    points
 }
 
 #[test]

@@ -23,8 +23,17 @@ const GAIN_DOUBLES_OVER_C: f64 = 140.0;
 /// In place of a link, Ω: nothing beside resistors of some kΩ.
 const LINK_OHM: f64 = 1e-6;
 
+/// How the amplifier's output ends.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Swing {
+    /// Nowhere: a point whose drive lies within the swing is one of the real circuit too.
+    Unlimited,
+    /// Where the row says.
+    Limited,
+}
+
 /// The netlist of one corner, without commands.
-pub fn of(stage: &Stage<'_>, corner: &Corner) -> String {
+pub fn of(stage: &Stage<'_>, corner: &Corner, swing: Swing) -> String {
     let rail = stage.rail;
     let full_a = stage.full_current_a();
     // The least feed is the valley under full load; the highest stands without load and falls with it.
@@ -47,7 +56,7 @@ pub fn of(stage: &Stage<'_>, corner: &Corner) -> String {
         format!("Rz f zi {rz_ohm:e}"),
         "Vz zi z 0".to_owned(),
         format!("Bz z 0 V = {}", zener(stage, corner, ambient_c)),
-        amplifier(stage, corner),
+        amplifier(stage, corner, swing),
         pass(stage, ambient_c),
         divider(stage, corner),
         format!("Iload o 0 {load_a:e}"),
@@ -106,7 +115,7 @@ fn zener(stage: &Stage<'_>, corner: &Corner, ambient_c: f64) -> String {
     format!("{v_25:e} + {drift} + {bend}")
 }
 
-fn amplifier(stage: &Stage<'_>, corner: &Corner) -> String {
+fn amplifier(stage: &Stage<'_>, corner: &Corner, swing: Swing) -> String {
     let a = stage.amplifier;
     let stand_ins = &stage.rail.stand_ins;
     let ratio = |db: Option<f64>, stand_in: f64| 10f64.powf(db.unwrap_or(stand_in) / 20.0);
@@ -120,8 +129,12 @@ fn amplifier(stage: &Stage<'_>, corner: &Corner) -> String {
         format!("{sign:e}*({offset:e} + abs(v(f) - {vs_test_v:e})/{psrr:e} + v(z)/{cmrr:e})");
     let driven = format!("{gain:e}*(v(z) - v(d) + {error})");
     let (low, high) = (a.swing_low_v, a.swing_high_v);
+    let drive = match swing {
+        Swing::Unlimited => driven,
+        Swing::Limited => format!("min(max({driven}, {low:e}), v(f) - {high:e})"),
+    };
     [
-        format!("Ba a 0 V = min(max({driven}, {low:e}), v(f) - {high:e})"),
+        format!("Ba a 0 V = {drive}"),
         "Vb a b 0".to_owned(),
         format!("Iin d 0 {:e}", sign * a.ib_max_a),
         format!("Bs f 0 I = {:e} + i(Vb)", a.iq_max_a),
