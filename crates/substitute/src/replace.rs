@@ -75,8 +75,11 @@ impl Replacements {
 /// All slots but one may change beside the one that is gone.
 pub const MOST_FURTHER: u8 = 6;
 
-/// Combinations that are looked through for one number of further parts.
+/// Combinations that are looked through for one number of further parts while nothing is found.
 const MOST_COMBINATIONS: f64 = 2e8;
+
+/// The same once something is found, and more only lengthens the list.
+const MOST_FOR_MORE: f64 = 2e6;
 
 /// A combination on the reference side takes as long as so many elsewhere: values are tried there.
 const WEIGHT_OF_VALUES: f64 = 300.0;
@@ -100,7 +103,8 @@ pub fn replacements(case: &Case<'_, '_>, until: Until) -> Replacements {
     let mut found = Replacements::default();
     let mut best: HashMap<Choices, Replacement> = HashMap::new();
     for further in 0..=MOST_FURTHER {
-        if finder.combinations(further) > MOST_COMBINATIONS {
+        let most = if best.is_empty() { MOST_COMBINATIONS } else { MOST_FOR_MORE };
+        if finder.combinations(further) > most {
             found.too_many = true;
             break;
         }
