@@ -80,13 +80,16 @@ struct Placed<'o> {
     option: &'o CoverOption,
 }
 
+/// What an option takes: its parts, and the pieces of those whose stock is counted.
+type Taken<'o> = (&'o [u32], &'o [(u32, u64)]);
+
 /// The options without those that another one of any use makes needless: of equal parts the cheaper;
 /// and a part that stands alone and uncounted wherever it stands, where another serves all its designs
 /// at no more cost.
 fn reduced(designs: &[Vec<CoverOption>]) -> Vec<Vec<Placed<'_>>> {
     let mut kept: Vec<Vec<Placed<'_>>> = Vec::new();
     for options in designs {
-        let mut by_parts: BTreeMap<(&[u32], &[(u32, u64)]), Placed<'_>> = BTreeMap::new();
+        let mut by_parts: BTreeMap<Taken<'_>, Placed<'_>> = BTreeMap::new();
         for (place, option) in options.iter().enumerate() {
             let key = (option.parts.as_slice(), option.pieces.as_slice());
             let cheaper = by_parts
