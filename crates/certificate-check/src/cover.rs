@@ -3,14 +3,13 @@
 use crate::certificate::Claims;
 use crate::rank::Share;
 use crate::rows::{Listed, key};
-use crate::sides::{Parts, Reference, Shop, Side, parts, together};
+use crate::sides::{Parts, Reference, Shop, Side, biased, together};
 use crate::{Refused, refused};
-use circuit::check::{Check, Finding, Tally, WhileHolding};
+use circuit::check::{Check, Finding, WhileHolding};
 use circuit::drive;
 use circuit::reference::choose_rz;
 use circuit::slot::Slot;
 use std::collections::HashSet;
-use std::ops::ControlFlow::{self, Break, Continue};
 
 /// Proves that every combination is listed, fails a check, or ranks after the last row.
 pub(crate) fn prove(shop: &Shop, listed: &Listed, claims: &Claims) -> Result<(), Refused> {
@@ -101,19 +100,16 @@ impl<'c, 'a> Open<'c, 'a> {
         let lines: Vec<f64> = rows.divider_lines.iter().map(|row| shop.price(row)).collect();
         let cheapest_line = lines.iter().copied().fold(f64::INFINITY, f64::min);
         let cheapest_pot = pots.iter().map(|pot| pot.1).fold(f64::INFINITY, f64::min);
-        let biased =
-            (0..shop.zeners.len()).flat_map(|z| (0..shop.bias_lines.len()).map(move |b| (z, b)));
+        let lines_of = |zener| (0..shop.bias_lines.len()).map(move |line| (zener, line));
         let mut found = Vec::new();
-        for (zener, bias_line) in biased {
+        for (zener, bias_line) in (0..shop.zeners.len()).flat_map(lines_of) {
             let chosen = choose_rz(&shop.zeners[zener], &shop.bias_lines[bias_line], shop.rail);
             let Some(chosen) = chosen else { continue };
-            let zener_and_line =
-                parts([(Slot::Zener, Some(zener)), (Slot::BiasLine, Some(bias_line))]);
             let price = shop.price(rows.zeners[zener]) + shop.price(rows.bias_lines[bias_line]);
             // Before a divider is chosen: at least one piece of its line, and no current through it.
             let surely_late = |line: f64, pot: f64| {
                 let share = [price + line + pot, chosen.0.iz_nominal_a, chosen.1];
-                chosen.0.vz_nominal_v >= 0.0 && is_late(share, &zener_and_line)
+                chosen.0.vz_nominal_v >= 0.0 && is_late(share, &biased(zener, bias_line))
             };
             if surely_late(cheapest_line, cheapest_pot) {
                 continue;
@@ -165,9 +161,9 @@ impl<'c, 'a> Open<'c, 'a> {
                     let parts = together(&reference.side.parts, &parts);
                     self.after(&[reference.side.share], &[share], &claims.least_power, &parts)
                 } else {
-                    let mut fail = Fail { check, found: false };
-                    let _ = self.shop.input_checks(reference, &best, &mut fail);
-                    fail.found
+                    let mut found: Vec<Finding> = Vec::new();
+                    let _ = self.shop.input_checks(reference, &best, &mut found);
+                    found.iter().any(|f| Some(f.check) == check && !f.holds())
                 };
                 if !is_true {
                     let reference = self.shop.spell(&reference.side.parts);
@@ -196,18 +192,5 @@ impl<'c, 'a> Open<'c, 'a> {
             }
         }
         Ok(())
-    }
-}
-
-/// Looks for one check that fails, whatever comes of the others.
-struct Fail {
-    check: Option<Check>,
-    found: bool,
-}
-
-impl Tally for Fail {
-    fn take(&mut self, finding: Finding) -> ControlFlow<()> {
-        self.found = self.check == Some(finding.check) && !finding.holds();
-        if self.found { Break(()) } else { Continue(()) }
     }
 }

@@ -1,12 +1,12 @@
 //! Each choice of a side under the rail's conditions: whether it holds by itself, and what it adds.
 
 use crate::rank::{Names, Share};
-use catalog::Row;
+use catalog::{Row, Sink};
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::{self, Aim, Network, amplifier_checks, choose_divider};
 use circuit::check::{Tally, WhileHolding};
 use circuit::divider::{Divider, nominal_current_a};
-use circuit::pass::{CaseTemperatures, Duty, Mounted, PassFigures, Unmounted};
+use circuit::pass::{Duty, Mounted, PassFigures};
 use circuit::rail::Rail;
 use circuit::reference::{Bias, ZenerAtRail};
 use circuit::resistor::{LineAtRail, PotAtRail};
@@ -21,6 +21,10 @@ pub(crate) fn parts<const N: usize>(chosen: [(Slot, Option<usize>); N]) -> Parts
     let mut parts = [None; Slot::COUNT];
     chosen.into_iter().for_each(|(slot, place)| parts[slot as usize] = place);
     parts
+}
+
+pub(crate) fn biased(zener: usize, bias_line: usize) -> Parts {
+    parts([(Slot::Zener, Some(zener)), (Slot::BiasLine, Some(bias_line))])
 }
 
 pub(crate) fn together(a: &Parts, b: &Parts) -> Parts {
@@ -143,11 +147,8 @@ impl<'a> Shop<'a> {
         let before = self.price(rows.zeners[zener]) + self.price(rows.bias_lines[bias_line]);
         let cost = before + pieces * self.price(rows.divider_lines[line]) + pot_price;
         let share = [cost, bias.iz_nominal_a + nominal_current_a(&bias, &divider), stress];
-        let zener_and_line = [(Slot::Zener, Some(zener)), (Slot::BiasLine, Some(bias_line))];
-        let parts = together(
-            &parts(zener_and_line),
-            &parts([(Slot::DividerLine, Some(line)), (Slot::Pot, pot)]),
-        );
+        let divider_parts = parts([(Slot::DividerLine, Some(line)), (Slot::Pot, pot)]);
+        let parts = together(&biased(zener, bias_line), &divider_parts);
         Some(Reference { side: Side { main: line, parts, share }, bias, divider })
     }
 
@@ -176,18 +177,14 @@ impl<'a> Shop<'a> {
         let (row, figures) = (self.rows.transistors[main], &self.transistors[main]);
         let (rail, duty) = (self.rail, &self.duty);
         let sink_row = sink.map(|sink| self.rows.heatsinks[sink]);
-        let on = |case| Mounted::on(case, figures, duty);
-        let mounted = match (CaseTemperatures::on_own_sink(duty, rail), sink_row) {
-            (Some(case), None) => on(case),
-            (None, Some(sink)) if sink.figures.fits.contains(row.package.as_ref()?) => {
-                on(CaseTemperatures::on_heatsink(&sink.figures.figures, duty, rail))
-            }
-            // No pin of the heatsink slot rules out a transistor without one.
-            (None, None) if self.rows.sheet.parts.pins[Slot::Heatsink as usize].is_none() => {
-                Unmounted::new(&row.figures, duty, rail)?.into()
-            }
-            _ => return None,
-        };
+        let fits = |s: &Row<Sink>| row.package.as_ref().is_some_and(|p| s.figures.fits.contains(p));
+        // A pin of the heatsink slot rules out a transistor without one.
+        let is_pinned = self.rows.sheet.parts.pins[Slot::Heatsink as usize].is_some();
+        if !sink_row.map_or(!is_pinned || !rail.chooses_heatsink(), fits) {
+            return None;
+        }
+        let on = sink_row.map(|sink| &sink.figures.figures);
+        let mounted = Mounted::new(&row.figures, figures, on, duty, rail)?;
         let stress = WhileHolding::over(|t| figures.checks(&mounted, duty, rail, t)).ok()?;
         let cost = self.price(row) + sink_row.map_or(0.0, |sink| self.price(sink));
         let parts = parts([(Slot::Pass, Some(main)), (Slot::Heatsink, sink)]);

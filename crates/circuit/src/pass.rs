@@ -454,6 +454,25 @@ pub struct Mounted {
 }
 
 impl Mounted {
+    /// On a chosen heatsink, on the sink that the sheet brings, or in free air. None where a heatsink is
+    /// chosen beside the sheet's own, or the transistor can't go without one.
+    pub fn new(
+        part: &Transistor,
+        figures: &PassFigures,
+        sink: Option<&Heatsink>,
+        duty: &Duty,
+        rail: &Rail,
+    ) -> Option<Self> {
+        match (sink, CaseTemperatures::on_own_sink(duty, rail)) {
+            (None, Some(case)) => Some(Self::on(case, figures, duty)),
+            (None, None) => Unmounted::new(part, duty, rail).map(Self::from),
+            (Some(sink), None) => {
+                Some(Self::on(CaseTemperatures::on_heatsink(sink, duty, rail), figures, duty))
+            }
+            (Some(_), Some(_)) => None,
+        }
+    }
+
     /// On a sink: TJ = TC + P·θJC.
     pub fn on(case: CaseTemperatures, figures: &PassFigures, duty: &Duty) -> Self {
         Self { junction_c: case.service_c + duty.power_w * figures.rth_jc_c_per_w, case }

@@ -140,6 +140,15 @@ pub fn certify(
     if references.len() > MOST_REFERENCES {
         return Err(CertificateError::TooLarge);
     }
+    // As the checker does: power sides that are late beside the least of all references.
+    let corner = references.iter().map(|r| r.share).reduce(|mut least, share| {
+        least.least(&share);
+        least
+    });
+    let corner: Vec<Share> = corner.into_iter().collect();
+    powers.retain(|mount| {
+        !mark.is_after(&corner, &least_amplifier, &[mount.share], mount.names)
+    });
     let mut groups = Groups::default();
     let mut pairs = Vec::new();
     for (number, reference) in (0u32..).zip(&references) {

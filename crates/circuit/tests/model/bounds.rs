@@ -68,6 +68,8 @@ fn the_edges_of_the_band_leave_room_for_ten_digits() {
     // Nothing is asked of the low end of a knob that may be turned to nothing.
     let knob = AdjustableAim { from_v: 5.0, to_v: 9.0, low_stop_v: 0.0, ceiling_v: None };
     assert!(Aim::Adjustable(knob).may_suit(2.0, 5.0, 0.0, 1.5));
+    // But an error as large as the reference leaves none.
+    assert!(!Aim::Adjustable(knob).may_suit(2.0, 2.0, 2.0, 1.5));
 }
 
 #[test]

@@ -249,3 +249,19 @@ fn what_holds_and_what_binds_follow_from_the_findings() {
         assert_eq!(aims_at_a_pot, assembly.rail.is_adjustable(), "seed {seed}");
     }
 }
+
+#[test]
+fn an_amplifier_names_the_stand_ins_for_its_blanks() {
+    for seed in 0..100 {
+        let Case { amplifier: a, rail, .. } = Case::new(seed);
+        let blanks = [
+            (a.gain_min_db, "assume.gain_db"),
+            (a.psrr_min_db, "assume.psrr_db"),
+            (a.cmrr_min_db, "assume.cmrr_db"),
+            (a.vs_test_v, "assume.vs_test_v"),
+        ];
+        let right = blanks.iter().filter(|(cell, _)| cell.is_none()).map(|(_, key)| *key);
+        let named = AmplifierAtRail::new(&a, &rail).stand_ins_used();
+        assert_eq!(named.collect::<Vec<_>>(), right.collect::<Vec<_>>(), "seed {seed}");
+    }
+}

@@ -138,6 +138,14 @@ impl Powers {
     pub fn shares(&self) -> impl Iterator<Item = Share> {
         self.passes.iter().flat_map(|pass| pass.mounts.iter().map(|mount| mount.share))
     }
+
+    /// Keeps the power sides that `stays` lets stay.
+    pub fn retain(&mut self, stays: impl Fn(&Mount) -> bool) {
+        for pass in &mut self.passes {
+            pass.mounts.retain(&stays);
+        }
+        self.passes.retain(|pass| !pass.mounts.is_empty());
+    }
 }
 
 /// A reference side with its values.
