@@ -73,8 +73,8 @@ fn bash_completes_a_command() {
     let folder = tempfile::tempdir().unwrap();
     let script = run(folder.path(), &["completions", "bash"]).out;
     std::fs::write(folder.path().join("script"), script).unwrap();
-    let ask = "source ./script; COMP_WORDS=(railwright sho); COMP_CWORD=1; \
-               _railwright railwright sho railwright; echo \"${COMPREPLY[*]}\"";
+    let ask = "source ./script; COMP_WORDS=(railwright shortl); COMP_CWORD=1; \
+               _railwright railwright shortl railwright; echo \"${COMPREPLY[*]}\"";
     let answer = std::process::Command::new(bash)
         .args(["--norc", "-c", ask])
         .current_dir(folder.path())
