@@ -275,13 +275,13 @@ fn sample_designs_do_what_their_page_says() {
     let names = entries.filter_map(|e| e.ok()?.file_name().into_string().ok());
     let mut designs: Vec<String> = names.filter(|n| n.ends_with(".toml")).collect();
     designs.sort();
-    assert_eq!(designs.len(), 8);
+    assert_eq!(designs.len(), 29);
     let designs = designs.iter().map(|name| format!("catalogs-sample/designs/{name}"));
     let arguments: Vec<String> = arguments.into_iter().chain(designs).collect();
     let arguments: Vec<&str> = arguments.iter().map(String::as_str).collect();
     let told = run(&repository(""), &arguments);
     assert_eq!(told.status, 1, "{}", told.err);
-    assert_eq!(told.out.matches(" holds ").count(), 6, "{}", told.out);
+    assert_eq!(told.out.matches(" holds ").count(), 27, "{}", told.out);
     for fact in [
         "jetty-first-build.toml  fails",
         "banned by `parts.ban`",
