@@ -64,7 +64,7 @@ fn a_pair_that_is_dropped() {
 }
 
 /// The first group with a check, or with `rank`.
-fn group<'c>(certificate: &'c mut Value, is_rank: bool) -> &'c mut Value {
+fn group(certificate: &mut Value, is_rank: bool) -> &mut Value {
     let groups = certificate["claims"]["groups"].as_array_mut().expect("groups");
     groups.iter_mut().find(|g| (g["because"] == "rank") == is_rank).expect("there is such a group")
 }
