@@ -11,8 +11,16 @@ fn a_certificate_is_written_beside_the_list_and_over_nothing() {
     let folder = tempfile::tempdir().expect("a folder");
     let path = folder.path().join("x.json");
     let file = path.to_str().expect("UTF-8");
-    let arguments =
-        ["shortlist", SHEET, "--catalogs", "catalogs-sample", "--by", "cost", "--certificate", file];
+    let arguments = [
+        "shortlist",
+        SHEET,
+        "--catalogs",
+        "catalogs-sample",
+        "--by",
+        "cost",
+        "--certificate",
+        file,
+    ];
     let first = run(&repository(""), &arguments);
     assert_eq!(first.status, 0, "{}", first.err);
     assert!(first.err.contains("wrote"), "{}", first.err);

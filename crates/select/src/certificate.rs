@@ -146,9 +146,7 @@ pub fn certify(
         least
     });
     let corner: Vec<Share> = corner.into_iter().collect();
-    powers.retain(|mount| {
-        !mark.is_after(&corner, &least_amplifier, &[mount.share], mount.names)
-    });
+    powers.retain(|mount| !mark.is_after(&corner, &least_amplifier, &[mount.share], mount.names));
     let mut groups = Groups::default();
     let mut pairs = Vec::new();
     for (number, reference) in (0u32..).zip(&references) {
