@@ -5,7 +5,7 @@
 
 use crate::column::{Axes, Cell, Column, Figure, Need, Range};
 use crate::decimal::{self, DecimalMark};
-use crate::fault::{Damage, Fault, What};
+use crate::fault::{Damage, Fault, MOST_TEXT, What};
 use crate::header::Header;
 use crate::price::Price;
 use circuit::parts::OverCurrent;
@@ -108,6 +108,10 @@ impl<'r, 'n> Cells<'r, 'n> {
     pub(crate) fn text(&mut self, at: usize) -> &'r str {
         let cell = self.raw(at);
         match std::str::from_utf8(cell) {
+            Ok(text) if text.len() > MOST_TEXT => {
+                self.fault_cell(at, What::TooLong { bytes: text.len() });
+                ""
+            }
             Ok(text) => {
                 if may_be_damaged(cell)
                     && let Some(damage) = Damage::of(text)

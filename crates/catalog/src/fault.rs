@@ -8,6 +8,10 @@ use notice::{Notice, Place};
 use quantity::notation::{self, NotationError, Unit};
 use quantity::spreadsheet;
 
+/// The longest text of a cell, in bytes. Names go into every table and message, so one without bounds
+/// would fill memory many times over; more than this is an unclosed quotation mark or a broken file.
+pub(crate) const MOST_TEXT: usize = 1000;
+
 /// One thing that is wrong with a row.
 #[derive(Debug)]
 pub(crate) struct Fault {
@@ -30,7 +34,9 @@ pub(crate) enum What {
     Duplicate { file: Option<String>, line: u32 },
     /// The cell is not valid UTF-8.
     NotUtf8,
-    /// The same, in a column that is not declared.
+    /// The text of the cell is longer than any name is.
+    TooLong { bytes: usize },
+    /// The same as [`What::NotUtf8`], in a column that is not declared.
     NotUtf8InField { field: usize },
     /// The cell is no figure in its unit.
     Notation { error: NotationError, unit: Unit },
@@ -130,6 +136,9 @@ fn told(what: &What, column: Option<&Column>, decimal: &DecimalMark) -> (&'stati
         What::NotUtf8 | What::NotUtf8InField { .. } => {
             ("cell-not-utf8", "the cell is not valid UTF-8".to_owned())
         }
+        What::TooLong { bytes } => {
+            ("cell-too-long", format!("`{name}`: a text of {bytes} bytes is no name"))
+        }
         What::Notation { error: error @ NotationError::OtherUnit { .. }, .. } => {
             ("cell-unit", format!("`{name}`: {error}"))
         }
@@ -212,6 +221,7 @@ fn expected(what: &What, column: Option<&Column>) -> Option<String> {
             Some("each part of a maker once in all files of a kind".to_owned())
         }
         What::NotUtf8 | What::NotUtf8InField { .. } => Some("text in UTF-8".to_owned()),
+        What::TooLong { .. } => Some(format!("at most {MOST_TEXT} bytes")),
         What::LineWithoutValue
         | What::LineTooWide
         | What::ZeroPowerBelowFull { .. }

@@ -16,6 +16,7 @@
 //! | `row-without-part`, `row-duplicate`, `row-ragged` | which part it is, and which cell is which |
 //! | `row-without-value`, `row-too-wide`, `row-power-rating` | cells that can't be true together |
 //! | `cell-notation`, `cell-unit`, `cell-not-utf8` | the cell is no figure, or one in another unit |
+//! | `cell-too-long` | the text is longer than any name |
 //! | `cell-out-of-range`, `cell-word` | a figure, or a word, that the column doesn't take |
 //! | `cell-list`, `cell-points`, `cell-price` | a list, and the item in it that is wrong |
 //! | `cell-thousands` | a comma that may part thousands or decimals |

@@ -4,7 +4,7 @@ mod common;
 
 use common::run;
 use docs_check::root;
-use docs_check::session::Session;
+use docs_check::shell::Shell;
 use std::path::Path;
 
 /// Every command that does something, as its words: those without commands below them.
@@ -69,9 +69,9 @@ fn every_command_has_two_examples_that_run_on_the_sample_shop() {
                 let examples = examples(&help_of(words));
                 assert!(examples.len() >= 2, "{words:?} has two examples: {examples:?}");
                 // Those of a command follow each other, as a reader would try them.
-                let session = Session::new(&root(), program).expect("a session");
+                let shell = Shell::new(&root(), program).expect("a shell");
                 for example in examples {
-                    let ran = session.run(&example).expect("a shell");
+                    let ran = shell.run(&example).expect("a shell");
                     // 1 is an answer too: a design that fails, a list without a row.
                     assert!(matches!(ran.status, Some(0 | 1)), "{example}: {}", ran.said);
                 }
@@ -99,12 +99,12 @@ fn a_closed_pipe_is_a_normal_end_of_every_command() {
         for words in &commands {
             scope.spawn(move || {
                 let Some(example) = examples(&help_of(words)).into_iter().next() else { return };
-                let session = Session::new(&root(), program).expect("a session");
+                let shell = Shell::new(&root(), program).expect("a shell");
                 // Until the reader is gone for certain, nothing is written.
                 let ends = format!(
                     "{{ sleep 0.2; {example}; echo \"ended $?\" >ended; }} | true; cat ended"
                 );
-                let ran = session.run(&ends).expect("a shell");
+                let ran = shell.run(&ends).expect("a shell");
                 let is_normal = ran.said.contains("ended 0") || ran.said.contains("ended 1");
                 assert!(is_normal && !ran.said.contains("panicked"), "{example}: {}", ran.said);
             });

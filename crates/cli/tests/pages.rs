@@ -3,7 +3,7 @@
 use docs_check::drawn::{DRAWINGS, FOLDER};
 use docs_check::page;
 use docs_check::root;
-use docs_check::session::Session;
+use docs_check::shell::Shell;
 use docs_check::shown::stale;
 use std::path::Path;
 
@@ -13,8 +13,8 @@ fn the_output_that_pages_show_is_current() {
     let mut shown = 0;
     for page in page::all(&root()).expect("every page can be read") {
         shown += page.code_blocks("console").len();
-        let session = Session::new(&root(), program).expect("a session");
-        let faults = stale(&page, &session).expect("a shell");
+        let shell = Shell::new(&root(), program).expect("a shell");
+        let faults = stale(&page, &shell).expect("a shell");
         assert!(
             faults.is_empty(),
             "{} shows other output than the program prints; look at it and run \
@@ -27,11 +27,11 @@ fn the_output_that_pages_show_is_current() {
 
 #[test]
 fn the_pictures_that_pages_show_are_current() {
-    let session = Session::new(&root(), Path::new(env!("CARGO_BIN_EXE_railwright")));
-    let session = session.expect("a session");
+    let shell = Shell::new(&root(), Path::new(env!("CARGO_BIN_EXE_railwright")));
+    let shell = shell.expect("a shell");
     for drawing in DRAWINGS {
         let path = root().join(FOLDER).join(drawing.file);
-        let now = drawing.now(&session).expect("the picture");
+        let now = drawing.now(&shell).expect("the picture");
         assert!(
             std::fs::read(&path).is_ok_and(|shown| shown == now),
             "{} shows another picture than the program draws; look at it and run \

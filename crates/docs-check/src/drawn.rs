@@ -3,7 +3,7 @@
 //! They stand in `docs/pictures`. `cargo run -p docs-check -- renew` draws them anew; a test compares them
 //! with what the program draws now.
 
-use crate::session::Session;
+use crate::shell::Shell;
 use std::io;
 
 /// A picture of the pages.
@@ -42,15 +42,15 @@ impl Drawing {
     ///
     /// # Errors
     /// Where no shell can be started, or the program draws nothing: what it said is the message.
-    pub fn now(&self, session: &Session) -> io::Result<Vec<u8>> {
+    pub fn now(&self, shell: &Shell) -> io::Result<Vec<u8>> {
         let Self { file, subject, picture } = self;
-        let ran = session.run(&format!(
+        let ran = shell.run(&format!(
             "railwright plot catalogs-sample/{subject} --catalogs catalogs-sample --picture {picture} \
              --out {file} --overwrite"
         ))?;
         if ran.status != Some(0) {
             return Err(io::Error::other(format!("{file} is not drawn: {}", ran.said)));
         }
-        session.file(file)
+        shell.file(file)
     }
 }

@@ -12,7 +12,7 @@
 //! | [`code`] | where a function stands in the sources |
 //! | [`manifest`] | the crates of the workspace and what they depend on |
 //! | [`drawn`] | pictures that pages show |
-//! | [`shown`], [`session`] | output that pages show, held against what the program prints |
+//! | [`shown`], [`shell`] | output that pages show, held against what the program prints |
 //!
 //! It serves tests and writers alone and is no part of the tool.
 
@@ -21,7 +21,7 @@ pub mod drawn;
 pub mod generated;
 pub mod manifest;
 pub mod page;
-pub mod session;
+pub mod shell;
 pub mod shown;
 
 use std::path::PathBuf;

@@ -2,7 +2,7 @@
 //! code, and the output that they show.
 
 use docs_check::drawn::{self, DRAWINGS};
-use docs_check::session::Session;
+use docs_check::shell::Shell;
 use docs_check::{generated, page, root, shown};
 use std::io;
 use std::path::{Path, PathBuf};
@@ -29,13 +29,13 @@ fn renew(root: &Path) -> io::Result<()> {
     }
     let program = built_program()?;
     for page in page::all(root)? {
-        let session = Session::new(root, &program)?;
-        write_if_new(root, &page, &shown::renewed(&page, &session)?)?;
+        let shell = Shell::new(root, &program)?;
+        write_if_new(root, &page, &shown::renewed(&page, &shell)?)?;
     }
-    let session = Session::new(root, &program)?;
+    let shell = Shell::new(root, &program)?;
     for drawing in DRAWINGS {
         let path = root.join(drawn::FOLDER).join(drawing.file);
-        let now = drawing.now(&session)?;
+        let now = drawing.now(&shell)?;
         if std::fs::read(&path).ok().as_ref() != Some(&now) {
             std::fs::write(&path, now)?;
             println!("renewed {}/{}", drawn::FOLDER, drawing.file);

@@ -11,12 +11,12 @@
 //! $ another command
 //! ```
 //!
-//! The blocks of a page are one [`Session`] in the order of the page, so a command may read what an
+//! The blocks of a page are one [`Shell`] in the order of the page, so a command may read what an
 //! earlier one has written. Nobody types output into a page: a writer types the command and runs
 //! `cargo run -p docs-check -- renew`.
 
 use crate::page::Page;
-use crate::session::Session;
+use crate::shell::Shell;
 use pulldown_cmark::{CodeBlockKind, Event, Parser, Tag, TagEnd};
 use std::io;
 use std::ops::Range;
@@ -43,7 +43,7 @@ struct Shown {
 ///
 /// # Errors
 /// Where no shell can be started.
-pub fn stale(page: &Page, session: &Session) -> io::Result<Vec<String>> {
+pub fn stale(page: &Page, shell: &Shell) -> io::Result<Vec<String>> {
     let mut faults = Vec::new();
     for block in blocks(&page.text) {
         let Some(all) = page.text.get(block).and_then(commands) else {
@@ -51,7 +51,7 @@ pub fn stale(page: &Page, session: &Session) -> io::Result<Vec<String>> {
             continue;
         };
         for shown in all {
-            let output = session.run(&shown.command)?.said;
+            let output = shell.run(&shown.command)?.said;
             if let Some(line) = first_missing(&shown.excerpt, &output) {
                 faults.push(format!("`{}` prints no longer: {line}", shown.command));
             }
@@ -67,14 +67,14 @@ pub fn stale(page: &Page, session: &Session) -> io::Result<Vec<String>> {
 /// # Errors
 /// Where no shell can be started, or such a first line is printed no longer: then the writer must say
 /// what is to be shown.
-pub fn renewed(page: &Page, session: &Session) -> io::Result<String> {
+pub fn renewed(page: &Page, shell: &Shell) -> io::Result<String> {
     let mut text = String::new();
     let mut done = 0;
     for block in blocks(&page.text) {
         let Some(all) = page.text.get(block.clone()).and_then(commands) else { continue };
         text += page.text.get(done..block.start).unwrap_or_default();
         for shown in all {
-            let output = session.run(&shown.command)?.said;
+            let output = shell.run(&shown.command)?.said;
             text += &format!("{PROMPT}{}\n", shown.command);
             for line in renewed_excerpt(&shown.excerpt, &output).map_err(|line| {
                 io::Error::other(format!(
@@ -241,11 +241,11 @@ mod tests {
     fn commands_of_a_page_see_what_those_before_have_written() {
         let text = "```console\n$ echo 7 > x\n```\nand\n```console\n$ cat x; ls\nold\n```\n";
         let page = Page { name: "x.md".to_owned(), text: text.to_owned() };
-        let session = || Session::new(&crate::root(), std::path::Path::new("/bin/sh")).unwrap();
-        assert_eq!(stale(&page, &session()).unwrap().len(), 1);
-        let text = renewed(&page, &session()).unwrap();
+        let shell = || Shell::new(&crate::root(), std::path::Path::new("/bin/sh")).unwrap();
+        assert_eq!(stale(&page, &shell()).unwrap().len(), 1);
+        let text = renewed(&page, &shell()).unwrap();
         assert!(text.ends_with("$ cat x; ls\n7\ncatalogs-sample\nx\n```\n"), "{text}");
         let page = Page { text, ..page };
-        assert_eq!(stale(&page, &session()).unwrap(), Vec::<String>::new());
+        assert_eq!(stale(&page, &shell()).unwrap(), Vec::<String>::new());
     }
 }

@@ -1,4 +1,4 @@
-//! A shell session in a folder of its own that holds a copy of the sample shop.
+//! A shell in a folder of its own that holds a copy of the sample shop.
 
 use std::ffi::OsString;
 use std::io;
@@ -9,15 +9,15 @@ use tempfile::TempDir;
 /// Columns of text that a page has room for.
 const WIDTH: &str = "80";
 
-/// A session: its commands see what those before them have written.
+/// A shell: its commands see what those before them have written.
 #[derive(Debug)]
-pub struct Session {
+pub struct Shell {
     folder: TempDir,
     path: OsString,
 }
 
-impl Session {
-    /// A session in which `railwright` is this program, and `catalogs-sample` a copy of the
+impl Shell {
+    /// A shell in which `railwright` is this program, and `catalogs-sample` a copy of the
     /// repository's.
     ///
     /// # Errors
