@@ -107,6 +107,9 @@ LIMIT {top}
 # Rows that are put in order by rounded figures: many more than are shown.
 NEAR_TOP = 10_000
 
+# Columns that hold names; all others hold figures.
+NAMED = {"zener", "bias_line", "divider_line", "amplifier", "pass", "heatsink"}
+
 NAMES = 6  # the first columns of a row are names, the others figures
 
 
@@ -143,10 +146,12 @@ def rank(folder: pathlib.Path, threads: int, top: int):
     base = duckdb.connect(config={"threads": threads})
     base.execute(MACROS)
     for table, name in [("refs", "references"), ("amplifiers", "amplifiers"), ("powers", "powers"), ("rail", "rail")]:
-        # A column that is blank throughout, such as a leakage that no part gives, is a number all the same.
-        types = {"powers": ", types={'ileak_a': 'DOUBLE', 'heatsink': 'VARCHAR'}", "amplifiers": ", types={'isink_a': 'DOUBLE'}"}
-        source = str(folder / f"{name}.csv")
-        base.execute(f"CREATE TABLE {table} AS SELECT * FROM read_csv('{source}', header=true{types.get(table, '')})")
+        source = folder / f"{name}.csv"
+        with open(source, newline="") as file:
+            columns = next(csv.reader(file))
+        # Told, not guessed: a column that is blank throughout, or a table without a row, shows no type.
+        types = {column: "VARCHAR" if column in NAMED else "DOUBLE" for column in columns}
+        base.execute(f"CREATE TABLE {table} AS SELECT * FROM read_csv('{source}', header=true, columns={types})")
     base.execute(INPUTS.format(limit=LIMIT))
     base.execute(DRIVES.format(limit=LIMIT))
     rows = base.execute(RANKING.format(near_top=NEAR_TOP, top=top)).fetchall()

@@ -22,7 +22,7 @@ fn a_database_finds_the_same_candidates() {
     let name = "a_database_finds_the_same_candidates";
     let Some(python) = tool::python_with(name, &["duckdb"]) else { return };
     let script = Path::new(env!("CARGO_MANIFEST_DIR")).join("peer/duckdb_join.py");
-    let sizes = Sizes { lines: 4, ..Sizes::alike(150) };
+    let sizes = Sizes { lines: 4, ..Sizes::alike(100) };
     let mut compared = 0;
     for (seed, hard) in
         [(1, None), (2, None), (3, Some(Hard::Undominated)), (4, Some(Hard::OneCheck))]
