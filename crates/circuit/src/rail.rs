@@ -251,7 +251,8 @@ pub struct StandIns {
 
 impl StandIns {
     /// Gain rises with temperature: about 0.5 %/°C for one junction, 0.8 for a darlington.
-    /// Common practice, on the safe side of a gain that doubles from −55 to 85 °C.
+    /// Common practice. The first is on the safe side of a gain that doubles from −55 to 85 °C; two such
+    /// junctions lose up to 2.4 % more than the second says between 25 and −25 °C, and less below.
     pub fn hfe_tempco_per_c(&self, junctions: u8) -> f64 {
         self.hfe_tempco_per_c.unwrap_or(if junctions == 2 { 0.008 } else { 0.005 })
     }

@@ -20,9 +20,6 @@ const VBE_V_PER_C: f64 = 0.002;
 /// Source: T. R. Kuphaldt, "Lessons In Electric Circuits", vol. III, ch. 4: gain doubles from −55 °C to 85 °C.
 const GAIN_DOUBLES_OVER_C: f64 = 140.0;
 
-/// The stand-in of the model page for a darlington's gain, as a fraction for each °C.
-const DARLINGTON_PER_C: f64 = 0.008;
-
 /// In place of a link, Ω: nothing beside resistors of some kΩ.
 const LINK_OHM: f64 = 1e-6;
 
@@ -157,9 +154,7 @@ fn pass(stage: &Stage<'_>, ambient_c: f64) -> String {
         }
         // Two such junctions would lose up to 2.4 % more gain than the stand-in for a darlington says
         // (`docs/trust.md`); what is asked here is whether the tool does what its stand-in says.
-        (None, true) => {
-            1.0 + stage.rail.stand_ins.hfe_tempco_per_c.unwrap_or(DARLINGTON_PER_C) * off_c
-        }
+        (None, true) => 1.0 + stage.rail.stand_ins.hfe_tempco_per_c(q.junctions) * off_c,
     };
     let ln_i = "ln(max(i(Ve), 1e-9))";
     let ln_gain = curve(ln_i, q.hfe_min.as_slice(), f64::ln);
