@@ -263,6 +263,10 @@ fn mend(
             Some(text) => format!("save the file as UTF-8; read as Latin-1 this is `{text}`"),
             None => "save the file as UTF-8".to_owned(),
         }),
+        What::TooLong { .. } => Some(
+            "look for a quotation mark that is opened and never closed; notes belong in `source`"
+                .to_owned(),
+        ),
         What::Notation { error: NotationError::DateLike, .. } => {
             Some("make the column text in the spreadsheet, and type the figure again".to_owned())
         }
