@@ -226,6 +226,18 @@ pub fn amplifier_checks(
     drive::amp_fault(amp, rail).map_or(Continue(()), |finding| tally.take(finding))
 }
 
+/// The checks in which the amplifier meets the reference alone, whatever the divider: input range.
+#[inline]
+pub fn input_range_checks(
+    amp: &AmplifierAtRail,
+    bias: &Bias,
+    rail: &Rail,
+    tally: &mut impl Tally,
+) -> ControlFlow<()> {
+    tally.take(amp.amp_input_low(bias.vz_lo_v))?;
+    tally.take(amp.amp_input_high(bias.vz_hi_v, rail))
+}
+
 /// The checks in which the amplifier meets the reference side: input range, divider window, divider.
 #[inline]
 pub fn input_checks(
@@ -236,8 +248,7 @@ pub fn input_checks(
     rail: &Rail,
     tally: &mut impl Tally,
 ) -> ControlFlow<()> {
-    tally.take(amp.amp_input_low(bias.vz_lo_v))?;
-    tally.take(amp.amp_input_high(bias.vz_hi_v, rail))?;
+    input_range_checks(amp, bias, rail, tally)?;
     let input = amp.input_error(bias.vz_hi_v);
     let current = DividerCurrent::new(bias, &network.divider.ri, input);
     tally.take(current.divider_window(&rail.divider))?;
