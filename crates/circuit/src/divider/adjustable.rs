@@ -271,11 +271,18 @@ impl PairSearch<'_> {
     /// plo/RIhi ≥ adjust_to/(VZlo − ε) − adjust_from/(VZhi + ε); ceiling and low-stop leave
     /// phi/RIlo ≤ ceiling/(VZhi + ε) − low_stop/(VZlo − ε).
     fn spanning<'r>(&self, ris: &'r [Resistance], strain: f64) -> &'r [Resistance] {
+        let (from, to) = self.span_of(ris, strain);
+        ris.get(from..to).unwrap_or_default()
+    }
+
+    /// The same as places: from the first that is large enough to the first that is too large. Where
+    /// none is both, the end is not behind the start.
+    fn span_of(&self, ris: &[Resistance], strain: f64) -> (usize, usize) {
         let (least_v, most_v) =
             (self.bias.vz_lo_v - self.input.error_v, self.bias.vz_hi_v + self.input.error_v);
         let can_tell = least_v > 0.0 && strain.is_finite();
         if !can_tell {
-            return ris;
+            return (0, ris.len());
         }
         let (ease, raise) = (1.0 / strain, strain);
         let track = &self.pot.track;
@@ -288,7 +295,7 @@ impl PairSearch<'_> {
                 room_above(ceiling * raise / most_v, self.aim.low_stop_v * ease / least_v);
             ris.partition_point(|ri| ri.lo_ohm * most_ratio < track.hi_ohm)
         });
-        ris.get(from..to).unwrap_or_default()
+        (from, to)
     }
 
     /// Tries pairs from one end of those that hold until the next is clearly no better.
@@ -325,18 +332,33 @@ impl PairSearch<'_> {
     }
 
     fn least_strain(&self, ris: &[Resistance]) -> Option<Divider> {
-        // A pair somewhere in the middle tells how much strain need be looked at.
+        // A pair in the middle of those that are strained least, or where the span of a pot that is too
+        // short or too long for all of them would lie, tells how much strain need be looked at.
         let mut best = None;
-        let middle = ris.len() / 2;
-        let likely = self.spanning(ris, 1.05);
-        let probe = likely.get(likely.len() / 2).or(ris.get(middle))?;
-        self.strain_beside(probe, 0, &mut best);
+        let (from, to) = self.span_of(ris, 1.05);
+        let probe = ris.get((from + to) / 2).or(ris.last())?;
+        self.strain_beside(probe, self.likely_cross(probe), &mut best);
         let bound = best.map_or(f64::INFINITY, |c: Contender| c.figure);
-        let mut hint = 0;
-        for ri in self.spanning(ris, bound.max(1.0)) {
+        let spanning = self.spanning(ris, bound.max(1.0));
+        let mut hint = spanning.first().map_or(0, |ri| self.likely_cross(ri));
+        for ri in spanning {
             hint = self.strain_beside(ri, hint, &mut best);
         }
         best.map(|c: Contender| c.divider)
+    }
+
+    /// About where, among the values of RX beside one RI, what rises crosses what falls: a place to
+    /// begin at. Without tolerances and input current reach-high and reach-low are used alike where
+    /// Vreach·Vfloor = adjust_to·adjust_from: with x = RI + RX and the nominal track p,
+    /// x² + (p + end)·x + p·end = adjust_to·adjust_from·(RI/VZ)².
+    fn likely_cross(&self, ri: &Resistance) -> usize {
+        let (track, end) = (self.pot.track.ohm, self.pot.end_ohm);
+        let vz_v = 0.5 * (self.bias.vz_lo_v + self.bias.vz_hi_v);
+        let product = self.aim.to_v * self.aim.from_v * (ri.ohm / vz_v).powi(2);
+        let half = 0.5 * (track + end);
+        let rx_ohm = (half * half - track * end + product).sqrt() - half - ri.ohm;
+        // The first of the values of RX is the link.
+        self.line.values.partition_point(|r| r.ohm < rx_ohm) + usize::from(rx_ohm > 0.0)
     }
 
     /// Tries the values of RX beside one RI; tells where what rises crosses what falls.
