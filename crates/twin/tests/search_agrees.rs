@@ -1,6 +1,7 @@
 //! The search finds what trying every combination finds: lists, front, spread and counts, in any
 //! small shop.
 
+use circuit::parts::{Pot, ResistorLine};
 use circuit::slot::Slot;
 use proptest::prelude::*;
 use select::candidate::Candidate;
@@ -9,7 +10,7 @@ use select::ranking::{NO_SPREAD, Spread, shortlist, spread_out};
 use std::collections::BTreeMap;
 use twin::alike::{Listed, counts_alike, ranks_alike};
 use twin::plain::{Plain, PlainCandidate, front, spread};
-use twin::shops::{RandomShop, Sizes, shops};
+use twin::shops::{RandomShop, Row, Sizes, shops};
 
 /// Shops of the long run, by seed from 0.
 const SEEDS: u64 = 3_000;
@@ -41,6 +42,18 @@ fn in_context<T>(what: &str, seed: u64, result: Result<T, String>) -> Result<T, 
     result.map_err(|difference| format!("seed {seed}, {what}: {difference}"))
 }
 
+/// The counts of a problem, against the plain way.
+fn compare_counts(problem: &Problem<'_>, plain: &Plain) -> Result<(), String> {
+    let counts = select::count::count(problem, &|_| {});
+    let number = |n: &dyn ToString| n.to_string().parse::<u64>().map_err(|e| e.to_string());
+    let mut lost = BTreeMap::new();
+    for (to, combinations) in &counts.lost {
+        lost.insert(to.name().to_owned(), number(combinations)?);
+    }
+    let (covered, feasible) = (number(&counts.covered)?, number(&counts.feasible)?);
+    counts_alike(&plain.counts, covered, feasible, &lost)
+}
+
 /// Everything that the search answers for a problem, against the plain way.
 fn compare(shop: &RandomShop, problem: &Problem<'_>) -> Result<usize, String> {
     let seed = shop.seed;
@@ -66,14 +79,7 @@ fn compare(shop: &RandomShop, problem: &Problem<'_>) -> Result<usize, String> {
     let quick_spread = spread_out(&quick_front, &spread_of(&limits));
     in_context("front spread", seed, ranks_alike(&spread_front, listed(&quick_spread)))?;
 
-    let counts = select::count::count(problem, &|_| {});
-    let number = |n: &dyn ToString| n.to_string().parse::<u64>().map_err(|e| e.to_string());
-    let mut lost = BTreeMap::new();
-    for (to, combinations) in &counts.lost {
-        lost.insert(to.name().to_owned(), number(combinations)?);
-    }
-    let (covered, feasible) = (number(&counts.covered)?, number(&counts.feasible)?);
-    in_context("counts", seed, counts_alike(&plain.counts, covered, feasible, &lost))?;
+    in_context("counts", seed, compare_counts(problem, &plain))?;
     Ok(plain.ranked.len())
 }
 
@@ -118,6 +124,44 @@ fn the_front_of_many_amplifiers_and_pots_is_what_trying_every_combination_finds(
     }
     assert!(longest > 12, "the longest front has {longest} rows");
     assert!(adjustable > 10, "only {adjustable} adjustable rails have a front worth the name");
+}
+
+/// Counts work out once what no check tells apart. Here much is the same, and what differs does so in one
+/// figure alone.
+#[test]
+fn parts_that_differ_in_one_figure_are_counted_apart() {
+    let mut told_apart = 0;
+    for seed in 0..SEEDS / 10 {
+        let mut shop = RandomShop::from_seed(seed);
+        let Some(first) = shop.pots.first().cloned() else { continue };
+        let mut add = |name: &str, change: fn(&mut Pot)| {
+            let mut row = first.clone();
+            row.part = name.to_owned();
+            change(&mut row.figures);
+            shop.pots.push(row);
+        };
+        add("the same", |_| {});
+        add("end", |pot| pot.end_ohm = 0.05 * pot.value_ohm);
+        add("tolerance", |pot| pot.tol = 0.9 * pot.tol);
+        add("power", |pot| pot.rating.power_w *= 0.05);
+        add("voltage", |pot| pot.vmax_v = Some(2.0));
+        let mut add = |name: &str, change: fn(&mut ResistorLine)| {
+            let mut row = shop.divider_lines[0].clone();
+            row.part = name.to_owned();
+            change(&mut row.figures);
+            shop.divider_lines.push(row);
+        };
+        add("the same", |_| {});
+        add("power", |line| line.rating.power_w *= 0.05);
+        let zener = Row { part: "the same".to_owned(), ..shop.zeners[0].clone() };
+        shop.zeners.push(zener);
+
+        let problem = shop.problem();
+        let plain = Plain::new(&problem);
+        compare_counts(&problem, &plain).unwrap_or_else(|d| panic!("seed {seed}: {d}"));
+        told_apart += usize::from(plain.counts.feasible > 0);
+    }
+    assert!(told_apart > 20, "only {told_apart} shops have a candidate");
 }
 
 #[test]
