@@ -55,6 +55,17 @@ impl Shop {
         }
     }
 
+    /// Brings the parts that can be chosen into the order of maker and name, whatever order the files
+    /// hold them in. Parts of one name stay in the order of files and lines.
+    pub fn sort_by_name(&mut self) {
+        self.zeners.sort_by_name();
+        self.opamps.sort_by_name();
+        self.transistors.sort_by_name();
+        self.resistors.sort_by_name();
+        self.pots.sort_by_name();
+        self.heatsinks.sort_by_name();
+    }
+
     /// The unproven parts of all catalogs, each with the kind of its catalog.
     pub fn unproven(&self) -> impl Iterator<Item = (Kind, &Unproven)> {
         let Shop { zeners, opamps, transistors, resistors, pots, heatsinks } = self;
@@ -78,7 +89,7 @@ pub struct Catalog<T> {
     pub kind: Kind,
     /// The files that were read, in the order of their names: none where an optional one is missing.
     pub files: Vec<FileRead>,
-    /// The parts that can be chosen, in the order of files and lines.
+    /// The parts that can be chosen, in the order of files and lines unless they were sorted.
     pub rows: Vec<Row<T>>,
     /// Parts that blank cells leave unproven, in the same order.
     pub unproven: Vec<Unproven>,
@@ -99,6 +110,10 @@ impl<T> Catalog<T> {
             left_out: Vec::new(),
             broken: 0,
         }
+    }
+
+    fn sort_by_name(&mut self) {
+        self.rows.sort_by(|a, b| (&a.maker, &a.part).cmp(&(&b.maker, &b.part)));
     }
 
     /// The file that a row, an unproven part or a row that was left out came from.

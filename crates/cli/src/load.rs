@@ -61,6 +61,12 @@ impl Loaded {
         })
     }
 
+    /// Brings the parts into the order of their names, so that which of several is shown as an example
+    /// does not depend on the order of rows.
+    pub(crate) fn sort_parts_by_name(&mut self) {
+        self.shop.sort_by_name();
+    }
+
     /// The rows that may be chosen; None where names in the sheet are at fault.
     pub(crate) fn eligible(&self, notices: &mut Vec<Notice>) -> Option<Eligible<'_>> {
         let mut found = Vec::new();
@@ -92,11 +98,11 @@ pub(crate) fn sheet_and_parts(
     catalogs: &Catalogs,
     set: &[String],
     screen: &Screen,
-    change: impl FnOnce(&mut Sheet),
+    change: impl FnOnce(&mut Loaded),
 ) -> Result<(&'static Loaded, Eligible<'static>), Fault> {
     let mut notices = Vec::new();
     let loaded = Loaded::read(sheet, catalogs, set, &mut notices).map(|mut loaded| {
-        change(&mut loaded.sheet);
+        change(&mut loaded);
         loaded.for_good()
     });
     let eligible = loaded.and_then(|loaded| loaded.eligible(&mut notices));

@@ -20,7 +20,7 @@ use crate::lever::{Follows, Lever};
 use crate::limits::Limits;
 use crate::probe::{Admitted, Market, best};
 use crate::scout::{
-    Driver, Known, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, Power, Suited,
+    Driver, Known, OF_DRIVE, OF_MEETING, OF_POWER, OF_REFERENCE, OF_SUPPLY, Power, Unsuited,
     drivers_of, find_knowing, powers,
 };
 use crate::survey::Survey;
@@ -162,14 +162,14 @@ struct AtRest<'b, 'p> {
     company: &'b Company<'p>,
     powers: Vec<Power>,
     drivers: Vec<Driver>,
-    suited: Suited,
+    unsuited: Unsuited,
 }
 
 impl<'b, 'p> AtRest<'b, 'p> {
     fn new(company: &'b Company<'p>) -> Self {
         let powers = powers(company, &Limits::ALL);
         let drivers = drivers_of(company, &Limits::ALL, &powers);
-        Self { company, powers, drivers, suited: Suited::default() }
+        Self { company, powers, drivers, unsuited: Unsuited::default() }
     }
 
     /// What stays as it is when a key moves: what meets only checks that the key does not touch.
@@ -182,7 +182,7 @@ impl<'b, 'p> AtRest<'b, 'p> {
         Known {
             powers: (!moves(OF_POWER)).then_some(&self.powers[..]),
             drivers: (!moves_drive).then_some(&self.drivers[..]),
-            suited: (!moves(OF_REFERENCE.and(OF_MEETING))).then_some(&self.suited),
+            unsuited: (!moves(OF_REFERENCE.and(OF_MEETING))).then_some(&self.unsuited),
         }
     }
 }

@@ -4,8 +4,6 @@ use catalog::column::{Cell, Column};
 use circuit::pass::Duty;
 use circuit::rail::Rail;
 use quantity::notation::Unit;
-use select::problem::Problem;
-use std::collections::BTreeSet;
 
 /// A way of filling a blank cell.
 #[derive(Debug, Clone, PartialEq)]
@@ -57,11 +55,10 @@ const SAFE_CURRENTS_A: (f64, f64) = (1e-3, 1e3);
 const PRICES: (f64, f64) = (1e-3, 1e5);
 
 /// The ways of filling a blank cell of a column, the least demanding first. Empty for a column that
-/// nothing can be tried for.
-pub(crate) fn fills_of(column: &Column, problem: &Problem<'_>) -> Vec<Fill> {
-    let rail = problem.rail;
+/// nothing can be tried for. `packages` are those that may be tried for a package.
+pub(crate) fn fills_of(column: &Column, rail: &Rail, packages: &[String]) -> Vec<Fill> {
     match (column.name, column.cell, column.plausible) {
-        ("fits" | "package", ..) => vec![Fill::Texts(packages(problem))],
+        ("fits" | "package", ..) => vec![Fill::Texts(packages.to_vec())],
         ("polarity", ..) => vec![Fill::Texts(vec!["npn".to_owned()])],
         ("hfe_min", _, Some((low, high))) => {
             vec![Fill::Gain { up_to_a: rail.emitter_current_a(), low, high }]
@@ -95,14 +92,6 @@ fn safe_areas(rail: &Rail) -> Vec<Fill> {
     }
     fills.retain(|fill| !matches!(fill, Fill::SafeCurrentAt { up_to_v } if *up_to_v <= 0.0));
     fills
-}
-
-/// Every package that a transistor has or a heatsink fits.
-fn packages(problem: &Problem<'_>) -> Vec<String> {
-    let of_transistors = problem.transistors.iter().filter_map(|t| t.package);
-    let of_sinks = problem.heatsinks.iter().flat_map(|s| s.fits.iter().copied());
-    let all: BTreeSet<&str> = of_transistors.chain(of_sinks).collect();
-    all.into_iter().map(str::to_owned).collect()
 }
 
 impl Fill {

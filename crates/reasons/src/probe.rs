@@ -17,6 +17,10 @@ pub trait Market {
 }
 
 /// The rows of a shop, under the rules of a sheet.
+///
+/// Of several combinations that would serve as an example the first is taken, in the order of rows: where
+/// these are sorted by name ([`catalog::Shop::sort_by_name`]), what is told does not depend on the order of
+/// the files' rows.
 #[derive(Debug, Clone, Copy)]
 pub struct ShopMarket<'a> {
     /// The sheet.

@@ -1,16 +1,18 @@
 //! Where parts would stand on a list if they were in the catalogs, many of them in one search.
 //!
 //! Each part is asked for by itself, as if it alone were added. The best candidate of each is found by a
-//! search among the candidates that hold one of them, of which each part gives one row. It ranks behind
-//! as many rows as the list has before it.
+//! search among the candidates that hold one of them, of which each part gives one row, and that ends
+//! where the score exceeds that of the list's last row. It ranks behind as many rows as the list has
+//! before it.
 
 use crate::filled::{put, put_in};
 use catalog::Shop;
 use circuit::slot::Slot;
+use rayon::prelude::*;
 use select::SearchError;
 use select::candidate::Candidate;
 use select::problem::Problem;
-use select::ranking::{NO_SPREAD, Spread, shortlist};
+use select::ranking::{NO_SPREAD, Spread, shortlist, shortlist_up_to};
 
 /// A list, with what may be chosen for it.
 pub(crate) struct Standing<'r, 'p> {
@@ -23,9 +25,8 @@ pub(crate) struct Standing<'r, 'p> {
 /// Scores nearer to each other than this share may tie at ten digits.
 const NEAR: f64 = 1e-9;
 
-/// Rows of the first list of parts: rows behind the last that may be on the list are dear to find, for
-/// parts tie there. Twice as many follow as long as there may be more.
-const FIRST_ROWS: usize = 1;
+/// At most so many parts are added at once, so that they need not all be kept.
+const AT_ONCE: usize = 20_000;
 
 impl<'r, 'p> Standing<'r, 'p> {
     /// The list of the first `top`.
@@ -38,9 +39,34 @@ impl<'r, 'p> Standing<'r, 'p> {
         if self.rows.len() < self.top { None } else { self.rows.last().map(|row| row.score) }
     }
 
-    /// For each shop, which holds one part, the rank of the part's best candidate in a slot if the part
-    /// were added; None where it would not be on the list.
-    pub fn ranks_in(
+    /// For each of so many parts the rank of its best candidate if the part were added; None where it
+    /// would not be on the list. `read` gives the shop that holds the part alone, where there is one.
+    pub fn ranks(
+        &self,
+        slots: &[Slot],
+        parts: usize,
+        read: impl Fn(usize) -> Option<Shop> + Sync,
+    ) -> Result<Vec<Option<usize>>, SearchError> {
+        let mut ranks = Vec::with_capacity(parts);
+        for from in (0..parts).step_by(AT_ONCE) {
+            let at_once = from..parts.min(from + AT_ONCE);
+            let shops: Vec<Option<Shop>> = at_once.into_par_iter().map(&read).collect();
+            match slots {
+                [slot] => ranks.extend(self.ranks_in(*slot, &shops)?),
+                // A line may serve in both of its slots at once, so each is asked for by itself.
+                slots => {
+                    let alone = |shop: &Option<Shop>| match shop {
+                        Some(shop) => self.rank_alone(slots, shop),
+                        None => Ok(None),
+                    };
+                    ranks.extend(shops.iter().map(alone).collect::<Result<Vec<_>, _>>()?);
+                }
+            }
+        }
+        Ok(ranks)
+    }
+
+    fn ranks_in(
         &self,
         slot: Slot,
         shops: &[Option<Shop>],
@@ -58,9 +84,12 @@ impl<'r, 'p> Standing<'r, 'p> {
                 numbers.push(number);
             }
         }
-        for candidate in self.best_of_each(slot, &among, numbers.len())? {
+        let mut each_once: Spread = NO_SPREAD;
+        each_once[slot as usize] = Some(1);
+        let most_score = self.worst_score().map_or(f64::INFINITY, |worst| worst * (1.0 + NEAR));
+        for candidate in shortlist_up_to(&among, most_score, numbers.len(), &each_once)? {
             let number = candidate.place(slot).and_then(|place| numbers.get(place));
-            let Some((rank, shop)) = number.and_then(|&n| Some((ranks.get_mut(n)?, &shops[n])))
+            let Some((rank, shop)) = number.and_then(|&n| Some((ranks.get_mut(n)?, shops.get(n)?)))
             else {
                 continue;
             };
@@ -71,28 +100,6 @@ impl<'r, 'p> Standing<'r, 'p> {
             };
         }
         Ok(ranks)
-    }
-
-    /// The best candidate of each part of a slot, as far as it may be on the list.
-    fn best_of_each(
-        &self,
-        slot: Slot,
-        among: &Problem<'_>,
-        parts: usize,
-    ) -> Result<Vec<Candidate>, SearchError> {
-        let mut spread: Spread = NO_SPREAD;
-        spread[slot as usize] = Some(1);
-        let mut most = FIRST_ROWS;
-        loop {
-            let rows = shortlist(among, most.min(parts), &spread)?;
-            let goes_on = rows.last().is_some_and(|last| {
-                self.worst_score().is_none_or(|worst| last.score <= worst * (1.0 + NEAR))
-            });
-            if !goes_on || rows.len() < most || most >= parts {
-                return Ok(rows);
-            }
-            most *= 2;
-        }
     }
 
     /// The rank that scores alone tell; None where one is too near.
@@ -109,7 +116,7 @@ impl<'r, 'p> Standing<'r, 'p> {
 
     /// The best rank of the one part of a shop if it were added in these slots, found by searching
     /// among everything.
-    pub fn rank_alone(&self, slots: &[Slot], shop: &Shop) -> Result<Option<usize>, SearchError> {
+    fn rank_alone(&self, slots: &[Slot], shop: &Shop) -> Result<Option<usize>, SearchError> {
         let mut with = self.problem.clone();
         for &slot in slots {
             let Some(more) = put(&with, slot, None, shop, self.boards) else { return Ok(None) };

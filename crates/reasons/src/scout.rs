@@ -24,7 +24,7 @@ use circuit::reference::{Chosen, ZenerAtRail, choose_rz, chosen_rz};
 use circuit::resistor::{LineAtRail, PotAtRail};
 use circuit::slot::Slot;
 use rayon::prelude::*;
-use std::collections::HashMap;
+use std::collections::HashSet;
 use std::sync::Mutex;
 
 /// Checks of the reference with its bias line.
@@ -83,17 +83,20 @@ pub(crate) struct Driver {
 /// Zener, bias line, divider line and pot, by their places.
 type ReferencePlaces = (u32, u32, u32, Option<u32>);
 
-/// Which amplifiers have been held against all reference sides, with the one that suits where there is
-/// one. Good for one set of limits, as long as nothing moves that a reference side meets.
+/// The amplifiers that no reference side suits, as far as has been seen. Good for one set of limits, as
+/// long as nothing moves that a reference side meets.
+///
+/// What suits an amplifier is not kept: which answer comes first depends on how work is shared out, and
+/// the same one is to be found whenever it is asked for.
 #[derive(Debug, Default)]
-pub(crate) struct Suited(Mutex<HashMap<u32, Option<ReferencePlaces>>>);
+pub(crate) struct Unsuited(Mutex<HashSet<u32>>);
 
 /// What is known from another rail that differs in nothing that matters for it; None where it may.
 #[derive(Clone, Copy, Default)]
 pub(crate) struct Known<'k> {
     pub powers: Option<&'k [Power]>,
     pub drivers: Option<&'k [Driver]>,
-    pub suited: Option<&'k Suited>,
+    pub unsuited: Option<&'k Unsuited>,
 }
 
 /// Some combination that keeps the limits; None where none does. The same one whenever it is asked.
@@ -118,8 +121,8 @@ pub(crate) fn find_knowing(
             &found
         }
     };
-    let (driver, reference) = match known.suited {
-        Some(suited) => suited.reference(company, limits, drivers)?,
+    let (driver, reference) = match known.unsuited {
+        Some(unsuited) => unsuited.reference(company, limits, drivers)?,
         None => reference_beside(company, limits, drivers)?,
     };
     let (zener, bias_line, divider_line, pot) = reference;
@@ -236,7 +239,7 @@ pub(crate) fn drivers_of(company: &Company<'_>, limits: &Limits, powers: &[Power
     company.amplifiers().par_iter().enumerate().filter_map(driver).collect()
 }
 
-impl Suited {
+impl Unsuited {
     /// A reference side beside one of these amplifiers.
     fn reference(
         &self,
@@ -248,18 +251,11 @@ impl Suited {
         let lock = || self.0.lock().unwrap_or_else(std::sync::PoisonError::into_inner);
         let open: Vec<Driver> = {
             let known = lock();
-            let suited = drivers.iter().find_map(|d| Some((*d, (*known.get(&d.amplifier)?)?)));
-            if suited.is_some() {
-                return suited;
-            }
-            drivers.iter().filter(|d| !known.contains_key(&d.amplifier)).copied().collect()
+            drivers.iter().filter(|d| !known.contains(&d.amplifier)).copied().collect()
         };
         let found = reference_beside(company, limits, &open);
-        match found {
-            Some((driver, reference)) => {
-                lock().insert(driver.amplifier, Some(reference));
-            }
-            None => lock().extend(open.iter().map(|driver| (driver.amplifier, None))),
+        if found.is_none() {
+            lock().extend(open.iter().map(|driver| driver.amplifier));
         }
         found
     }
@@ -305,6 +301,9 @@ fn meets_as_well(mine: &AmplifierAtRail, theirs: &AmplifierAtRail) -> bool {
 
 impl<'m, 'c> Meeting<'m, 'c> {
     /// None without amplifiers.
+    ///
+    /// Those that stay are in the order of their places: an amplifier more or less that suits nothing
+    /// leaves the first that suits the same.
     fn new(company: &'m Company<'c>, limits: &Limits, drivers: &[Driver]) -> Option<Self> {
         let amplifiers = company.amplifiers();
         let with_figures = |d: &Driver| Some((*d, amplifiers.get(d.amplifier as usize)?));
@@ -313,10 +312,12 @@ impl<'m, 'c> Meeting<'m, 'c> {
         let figures: Vec<AmplifierAtRail> = drivers.iter().map(|(_, amp)| **amp).collect();
         let best = best_at_input(&figures)?;
         let spreads = company.divider_lines.iter().map(LineAtRail::spread);
+        let mut drivers = undominated(drivers.into_iter(), |(_, a), (_, b)| meets_as_well(a, b));
+        drivers.sort_by_key(|(driver, _)| driver.amplifier);
         Some(Self {
             company,
             limits: *limits,
-            drivers: undominated(drivers.into_iter(), |(_, a), (_, b)| meets_as_well(a, b)),
+            drivers,
             best,
             aim: limits.aim(&company.aim),
             pots: company.pots.iter().map(|pot| limits.pot(pot)).collect(),

@@ -19,7 +19,25 @@ pub fn shortlist(
     spread: &Spread,
 ) -> Result<Vec<Candidate>, SearchError> {
     let ground = Ground::new(problem);
-    let mut search = Search::new(&ground, *spread)?;
+    first(Search::new(&ground, *spread)?, top)
+}
+
+/// The same list, ended before the first candidate whose score exceeds `score` at ten digits: what could
+/// only be behind costs nothing.
+///
+/// # Errors
+/// As for [`shortlist`].
+pub fn shortlist_up_to(
+    problem: &Problem<'_>,
+    score: f64,
+    top: usize,
+    spread: &Spread,
+) -> Result<Vec<Candidate>, SearchError> {
+    let ground = Ground::new(problem);
+    first(Search::new(&ground, *spread)?.up_to(score), top)
+}
+
+fn first(mut search: Search<'_, '_>, top: usize) -> Result<Vec<Candidate>, SearchError> {
     let mut list = Vec::new();
     while list.len() < top {
         match search.next()? {

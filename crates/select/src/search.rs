@@ -114,6 +114,8 @@ pub(crate) struct Search<'g, 'p> {
     sides: Sides<'g, 'p>,
     heap: BinaryHeap<Triple>,
     limits: Spread,
+    /// Candidates with a greater score are not looked for.
+    most_score: f64,
     /// Rows that a part (slot, place by name) has in the list so far.
     rows: HashMap<(Slot, u32), u32>,
     taken: u64,
@@ -129,6 +131,7 @@ impl<'g, 'p> Search<'g, 'p> {
             sides: Sides::new(ground),
             heap: BinaryHeap::new(),
             limits,
+            most_score: f64::INFINITY,
             rows: HashMap::new(),
             taken: 0,
             suited: None,
@@ -140,6 +143,14 @@ impl<'g, 'p> Search<'g, 'p> {
             search.push(roots, None, None, Key::LEAST);
         }
         Ok(search)
+    }
+
+    /// Ends the list where the next candidate has a greater score than this, at ten digits. Nothing that
+    /// could only be behind is taken apart, so a list that ends early is found early.
+    pub fn up_to(mut self, score: f64) -> Self {
+        self.most_score = rounded(score);
+        self.heap.retain(|triple| triple.key.score <= self.most_score);
+        self
     }
 
     /// Follows one promising power side and amplifier down to the best reference beside them.
@@ -174,7 +185,9 @@ impl<'g, 'p> Search<'g, 'p> {
             let Some(key) = self.key(&triple) else { continue };
             if key > triple.key {
                 triple.key = key;
-                self.heap.push(triple);
+                if key.score <= self.most_score {
+                    self.heap.push(triple);
+                }
                 continue;
             }
             self.step()?;
@@ -249,6 +262,9 @@ impl<'g, 'p> Search<'g, 'p> {
         let mut triple = Triple { key, reference, amplifier, power, at_input, at_output };
         if let Some(key) = self.key(&triple) {
             triple.key = key.max(of_whole);
+            if triple.key.score > self.most_score {
+                return;
+            }
             if self.heap.len() == self.heap.capacity() {
                 self.heap.reserve_exact(self.heap.len() / 4 + 1024);
             }

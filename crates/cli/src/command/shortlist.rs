@@ -136,9 +136,9 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
     check(outputs.chain(others.into_iter().flatten()), arguments.overwrite)?;
 
     let (loaded, eligible) =
-        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |sheet| {
+        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |loaded| {
             if let Some(criterion) = arguments.by {
-                rank_by(criterion, sheet);
+                rank_by(criterion, &mut loaded.sheet);
             }
         })?;
 

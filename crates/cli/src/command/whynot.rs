@@ -2,7 +2,7 @@
 
 use super::{Answer, Fault};
 use crate::arguments::{Catalogs, Showing};
-use crate::load::sheet_and_parts;
+use crate::load::{Loaded, sheet_and_parts};
 use crate::progress::watched;
 use crate::screen::Screen;
 use clap::Args;
@@ -45,8 +45,13 @@ Exit status: 0 where the question is answered, 2 where the input or the command 
 
 /// Does what the arguments ask for.
 pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Fault> {
-    let (_, eligible) =
-        sheet_and_parts(&arguments.sheet, &arguments.catalogs, &arguments.set, screen, |_| {})?;
+    let (_, eligible) = sheet_and_parts(
+        &arguments.sheet,
+        &arguments.catalogs,
+        &arguments.set,
+        screen,
+        Loaded::sort_parts_by_name,
+    )?;
     let text = match arguments.part.as_slice() {
         [] => about_nothing(&eligible, screen)?,
         parts => about_parts(&eligible, parts, screen)?,

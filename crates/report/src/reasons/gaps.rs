@@ -33,9 +33,6 @@ pub fn gaps(found: &Gaps, sheet: &Sheet, look: &Look) -> String {
     if found.barred > 0 {
         counts.push(format!("{} barred by status, stock, ban or pin", found.barred));
     }
-    if found.left > 0 {
-        counts.push(format!("{} more not looked at", found.left));
-    }
     text.push('\n');
     text += &look.paragraph(&format!("{}.", counts.join("; ")), 0, INDENT);
     text
