@@ -22,8 +22,10 @@ pub struct CellCure {
     pub unit: Unit,
     /// What it holds now.
     pub from: f64,
-    /// The figure with which every check holds, in the unit of the cell.
+    /// The figure with which every check holds, in the unit of the cell, rounded to the side that holds.
     pub value: f64,
+    /// No figure that is nearer does. Elsewhere a narrow range that is nearer may be missed.
+    pub is_nearest: bool,
     /// The parts of a candidate that it would then be in.
     pub company: NamedMiss,
 }
@@ -34,13 +36,18 @@ const BESIDE_THE_CIRCUIT: [&str; 3] = ["stock", "lead_weeks", "cost"];
 /// A figure is narrowed down by halving so often: to ten digits of the range it began with.
 const HALVINGS: usize = 34;
 
+/// Every check, cost, loss and stress is monotone in each figure of the slot's part by itself (model page,
+/// section 6). The figures of other parts move the values that are chosen.
+pub(crate) const fn is_monotone(slot: Slot) -> bool {
+    matches!(slot, Slot::Amplifier | Slot::Pass | Slot::Heatsink)
+}
+
 /// For each column with a single figure, a figure on the way from the row's own to an end of what is
 /// plausible with which the part would be in a candidate, values chosen again, and short of which it
 /// would not.
 ///
-/// Of an amplifier, a transistor or a heatsink it is the nearest there is, for every check is monotone
-/// in each of its figures (model page, section 6). Other figures move the values that are chosen, so a
-/// narrow range that is nearer may be missed.
+/// Where checks are monotone in the figure it is the nearest there is. Elsewhere a narrow range that is
+/// nearer may be missed.
 pub(crate) fn cell_cures(
     cells: &Cells,
     kind: Kind,
@@ -80,7 +87,8 @@ impl CellIn<'_, '_> {
             }
             let (value, company) = self.rounded(out, within)?;
             let (column, unit) = (self.column.name, figure.unit);
-            return Some(CellCure { column, unit, from, value, company });
+            let is_nearest = is_monotone(self.slot);
+            return Some(CellCure { column, unit, from, value, is_nearest, company });
         }
         None
     }

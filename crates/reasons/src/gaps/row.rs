@@ -1,5 +1,6 @@
 //! A row with blanks, and the ways of filling them that are tried.
 
+use crate::cell::is_monotone;
 use crate::fill::{Fill, fills_of};
 use crate::filled::{Cells, slots_of};
 use catalog::column::Column;
@@ -77,16 +78,12 @@ impl Row {
         counts.iter().all(|n| *n == 0) && alone.unproven.is_empty()
     }
 
-    /// Every check, cost, loss and stress is monotone in each figure of the part by itself (model page,
-    /// section 6), so the best value of a blank is an end of what is plausible.
-    fn is_best_at_an_end(&self) -> bool {
-        self.slots.iter().all(|slot| matches!(slot, Slot::Amplifier | Slot::Pass | Slot::Heatsink))
-    }
-
     /// The ways of filling the blanks that are tried: a few values of each, the ends among them; with one
     /// blank whose best value may lie anywhere, every value of its grid.
     pub fn ways(&self) -> Vec<Filling> {
-        let whole_grid = self.blanks.len() == 1 && !self.is_best_at_an_end();
+        // Where checks are monotone the best value of a blank is an end of what is plausible.
+        let is_best_at_an_end = self.slots.iter().all(|slot| is_monotone(*slot));
+        let whole_grid = self.blanks.len() == 1 && !is_best_at_an_end;
         let of = |fill: &Fill| if whole_grid { fill.texts() } else { fill.samples() };
         let options: Vec<Vec<String>> =
             self.blanks.iter().map(|(_, fills)| fills.iter().flat_map(of).collect()).collect();

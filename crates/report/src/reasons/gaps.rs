@@ -37,9 +37,8 @@ pub fn gaps(found: &Gaps, sheet: &Sheet, look: &Look) -> String {
     text += &look.paragraph(&format!("{}.", counts.join("; ")), 0, INDENT);
     text
         + &look.paragraph(
-            "Each value was tried by filling it in and searching, on both sides of every threshold; \
-             thresholds are rounded to the side that holds. Between two values of the grid that was \
-             tried another span may lie.",
+            "Every threshold was tried on both sides and is rounded to the side that holds. For zeners, \
+             lines and pots a span narrower than the steps that were tried may be missed.",
             0,
             INDENT,
         )

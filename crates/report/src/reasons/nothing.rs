@@ -21,7 +21,10 @@ pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &L
     text.push('\n');
     let covered = problem.covered().to_string();
     let first = match covered.as_str() {
-        "0" => format!("No part may be chosen for {}.", empty_slots(reasons)),
+        "0" => format!(
+            "No part may be chosen for {}. Name a part behind the sheet to be told what bars it.",
+            empty_slots(reasons)
+        ),
         n => format!("None of {} combinations holds every check.", grouped(n)),
     };
     text += &look.paragraph(&first, 0, 2);
@@ -41,12 +44,12 @@ pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &L
     section("Nearest combinations", misses(reasons, problem, look));
     let currency = Currency(sheet.currency.as_deref());
     let mut changes = words::key_changes(&reasons.keys, problem.rail, &currency, INDENT, look);
-    if changes.is_empty() {
-        changes = look.paragraph("No single change was found.", INDENT, 2 * INDENT);
-    }
     if covered != "0" {
+        if changes.is_empty() {
+            changes = look.paragraph("No single change was found.", INDENT, 2 * INDENT);
+        }
         changes += &words::keys_in_vain(&reasons.keys, look);
-        changes += &words::how_changes_are_found(look);
+        changes += &words::how_changes_are_found(&reasons.keys, look);
     }
     section("Smallest single changes that admit a candidate", changes);
     section("What would help", remedies(&reasons.remedies, look));
@@ -65,8 +68,8 @@ pub fn something(sheet: &Sheet, look: &Look) -> String {
     let mut text = look.heading(&format!("{}: there are candidates", sheet.name));
     text.push('\n');
     text + &look.paragraph(
-        "`railwright shortlist` ranks them. Name a part behind the sheet to be told why it is not on the \
-         list.",
+        "`railwright shortlist` ranks them. Name a part behind the sheet to be told where it stands, or \
+         why it is not on the list.",
         0,
         2,
     )
@@ -122,7 +125,7 @@ fn conflict(conflict: &Conflict, problem: &Problem<'_>, look: &Look) -> String {
             own.collect::<Vec<_>>().join("; ")
         );
         if !others.is_empty() {
-            told += &format!(" It also fails what {} asks.", others.join(", "));
+            told += &format!(" It also fails checks for {}.", others.join(", "));
         }
         text += &look.paragraph(&told, INDENT, 2 * INDENT);
     }

@@ -56,8 +56,7 @@ fn in_slot(slot: Slot, reason: &Reason, sheet: &Sheet, look: &Look) -> String {
                 + &outranked_by(outranked, candidate, &currency, look)
         }
         Reason::Infeasible(infeasible) => {
-            says("in no candidate, whatever stands beside it.")
-                + &told_infeasible(infeasible, sheet, &currency, look)
+            says("in no candidate.") + &told_infeasible(infeasible, sheet, &currency, look)
         }
     }
 }
@@ -115,7 +114,7 @@ fn outranked_by(
     };
     let rows = [("rank 1".to_owned(), first), (format!("rank {USUAL_ROWS}"), last)];
     for (what, row) in rows {
-        let told = format!("Against {what} ({}): {}.", candidate(row), against(row));
+        let told = format!("Against {what}, {}: {}.", differs(row, best, currency), against(row));
         text += &look.paragraph(&told, 2 * INDENT, 3 * INDENT);
     }
     if let Some(cheaper_by) = cheaper_by {
@@ -126,6 +125,19 @@ fn outranked_by(
         text += &look.paragraph(&told, 2 * INDENT, 3 * INDENT);
     }
     text
+}
+
+/// `at 3.87 EUR with Fenwrack/FNK314 + Grindlemoor/GDL-B5`: the cost of a candidate and those of its parts
+/// that another does not have.
+fn differs(candidate: &Admitted, other: &Admitted, currency: &Currency<'_>) -> String {
+    let names = candidate.parts.iter().zip(&other.parts);
+    let own = names.filter(|(mine, theirs)| mine != theirs).map(|(mine, _)| match mine {
+        Some(name) => words::full_name(name),
+        // Only heatsinks may be there or not.
+        None => "unmounted".to_owned(),
+    });
+    let own = own.collect::<Vec<_>>().join(" + ");
+    format!("at {} with {own}", currency.cost(candidate.cost))
 }
 
 fn told_infeasible(
@@ -139,7 +151,7 @@ fn told_infeasible(
     let mut line = |told: &str| text += &look.paragraph(told, 2 * INDENT, 3 * INDENT);
     if !infeasible.alone.is_empty() {
         let names: Vec<&str> = infeasible.alone.iter().map(|check| check.name()).collect();
-        line(&format!("Fails in every company: {}.", names.join(", ")));
+        line(&format!("Fails with every choice of the other parts: {}.", names.join(", ")));
     }
     for (n, miss) in infeasible.nearest.iter().enumerate() {
         let which = if n == 0 { "Nearest" } else { "Also near" };
@@ -150,9 +162,14 @@ fn told_infeasible(
         ));
     }
     for cure in &infeasible.cells {
-        let side = if cure.value > cure.from { "at least" } else { "at most" };
+        let side = if cure.value > cure.from { "up to" } else { "down to" };
+        let near = if cure.is_nearest {
+            "the least change of this cell that does"
+        } else {
+            "a narrow range that is nearer may be missed"
+        };
         line(&format!(
-            "Cell `{}` {} → {side} {}: then it is in a candidate, for one {}.",
+            "Cell `{}` from {} {side} {} would let it in ({near}): for one {}.",
             cure.column,
             words::figure(cure.from, cure.unit),
             words::figure(rounded(cure.value), cure.unit),
@@ -160,13 +177,13 @@ fn told_infeasible(
         ));
     }
     if infeasible.cells.is_empty() {
-        line("No single figure of its row would let it in, whatever stands beside it.");
+        line("No single figure of its row would let it in.");
     }
     let changes = words::key_changes(&infeasible.keys, &sheet.rail, currency, 3 * INDENT, look);
     if changes.is_empty() {
-        line("No value of a single key of the sheet was found that would let it in.");
+        line("No single key of the sheet was found that would let it in.");
         return text;
     }
-    line("A single key of the sheet would let it in:");
+    line("Any one of these keys of the sheet would let it in:");
     text + &changes
 }

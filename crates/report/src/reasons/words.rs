@@ -1,12 +1,12 @@
 //! Keys, parts, findings and changes, as every reason names them.
 
 use crate::look::Look;
-use circuit::check::Finding;
+use circuit::check::{Check, Finding};
 use circuit::rail::Rail;
 use circuit::slot::Slot;
 use quantity::digits::rounded;
 use quantity::notation::{Unit, engineering, resistance};
-use reasons::change::{Change, KeyChanges, MOST_PROBES, Side, Threshold};
+use reasons::change::{Change, KeyChanges, Side, Threshold};
 use reasons::lever::Lever;
 use reasons::probe::{Admitted, Name, name_at};
 use reasons::survey::Miss;
@@ -44,13 +44,8 @@ fn plain(x: f64) -> String {
 /// A figure of a check in the check's unit.
 fn of_check(x: f64, unit: &str) -> String {
     match unit {
-        _ if !x.is_finite() => {
-            if x > 0.0 {
-                "no end of it".to_owned()
-            } else {
-                "nothing".to_owned()
-            }
-        }
+        _ if x == f64::INFINITY => "infinite".to_owned(),
+        _ if !x.is_finite() => "nothing".to_owned(),
         "°C" => format!("{x:.1} °C"),
         unit => engineering(x, unit, DIGITS),
     }
@@ -62,6 +57,9 @@ pub(super) fn failed(finding: &Finding) -> String {
     let asked = of_check(finding.asked, unit);
     let allowed = of_check(finding.allowed, unit);
     let name = finding.check.name();
+    if finding.check == Check::DividerWindow && !finding.asked.is_finite() {
+        return format!("{name}: the line has no value in the window");
+    }
     if !finding.asked.is_finite() || !finding.allowed.is_finite() {
         return format!("{name}: asked {asked}, allowed {allowed}");
     }
@@ -178,27 +176,40 @@ pub(super) fn keys_in_vain(keys: &[KeyChanges], look: &Look) -> String {
         text += &look.paragraph(&format!("No value found: {tried}."), INDENT, 2 * INDENT);
     }
     if !untried.is_empty() {
-        let told = format!(
-            "No value would do, for every combination fails something that the key does not touch: \
-             {untried}."
-        );
+        let told = format!("Can't help alone, for something else always fails: {untried}.");
         text += &look.paragraph(&told, INDENT, 2 * INDENT);
     }
     text
 }
 
-/// How changes are found and what their words mean.
-pub(super) fn how_changes_are_found(look: &Look) -> String {
-    let how = format!(
-        "Exact: the named check holds from this value on, rounded to the side that holds, and nothing \
-         qualifies just short of it. Bracket: nothing qualifies at its other end, and no one check \
-         decides. Values are tried on a grid going away from the sheet's own, at most {MOST_PROBES} on \
-         each side; a narrow range between two of them may be missed."
-    );
-    look.paragraph(&how, INDENT, INDENT)
+/// What the words beside changes mean, and what may be missed.
+pub(super) fn how_changes_are_found(keys: &[KeyChanges], look: &Look) -> String {
+    let thresholds = || keys.iter().flat_map(|key| &key.changes).map(|change| change.threshold);
+    let mut told = Vec::new();
+    if thresholds().any(|t| matches!(t, Threshold::Exact { .. })) {
+        told.push("Exact: nothing qualifies just short of it; rounded to the side that holds.");
+    }
+    if thresholds().any(|t| matches!(t, Threshold::Bracket { .. })) {
+        told.push("Bracket: the limit lies between the two values.");
+    }
+    told.push("A range narrower than the steps that were tried may be missed.");
+    look.paragraph(&told.join(" "), INDENT, INDENT)
 }
 
-/// The names of keys.
+/// The names of keys, fractions of the derating policy behind the others.
 fn names<'k>(levers: impl Iterator<Item = &'k Lever>) -> String {
-    levers.map(Lever::name).collect::<Vec<_>>().join(", ")
+    let (fractions, keys): (Vec<&Lever>, Vec<&Lever>) = levers.partition(|lever| lever.in_policy);
+    let mut told: Vec<String> = Vec::new();
+    if !keys.is_empty() {
+        told.push(keys.into_iter().map(Lever::name).collect::<Vec<_>>().join(", "));
+    }
+    match fractions.as_slice() {
+        [] => {}
+        [one] => told.push(one.name()),
+        several => {
+            let fields: Vec<&str> = several.iter().map(|lever| lever.key.name).collect();
+            told.push(format!("derating: {}", fields.join(", ")));
+        }
+    }
+    told.join("; ")
 }
