@@ -1,6 +1,7 @@
 //! Why nothing qualifies.
 
 use crate::change::{KeyChanges, changes};
+use crate::check_set::CheckSet;
 use crate::conflict::Conflict;
 use crate::lever::{self, Follows, Lever};
 use crate::losses::{SlotLosses, losses};
@@ -27,6 +28,11 @@ pub struct Nothing {
     pub keys: Vec<KeyChanges>,
     /// What a designer could do.
     pub remedies: Vec<Remedy>,
+}
+
+/// Some combination holds every check. Unlike a search for the best it ends at the first that it meets.
+pub fn something_qualifies(problem: &Problem<'_>) -> bool {
+    Survey::new(problem).fails_within(CheckSet::EMPTY)
 }
 
 /// The reasons why nothing qualifies; `problem` is that of the market's sheet.

@@ -8,10 +8,9 @@ use crate::screen::Screen;
 use clap::Args;
 use eligible::Eligible;
 use reasons::names::{Entry, Unknown, look_up};
-use reasons::nothing::why_nothing;
+use reasons::nothing::{something_qualifies, why_nothing};
 use reasons::part::why_not;
 use reasons::probe::ShopMarket;
-use select::ranking::{NO_SPREAD, shortlist};
 use std::path::PathBuf;
 
 /// Tell why nothing qualifies for a rail, or why a part is not on its list
@@ -64,9 +63,9 @@ pub(crate) fn run(arguments: &Arguments, screen: &Screen) -> Result<Answer, Faul
 fn about_nothing(eligible: &Eligible<'_>, screen: &Screen) -> Result<String, Fault> {
     let problem = eligible.problem();
     let market = ShopMarket { sheet: eligible.sheet, shop: eligible.shop, only: None };
-    let first =
-        watched("searching", screen.shows_progress(), |_| shortlist(&problem, 1, &NO_SPREAD));
-    if !first.map_err(Fault::Search)?.is_empty() {
+    let qualifies =
+        watched("searching", screen.shows_progress(), |_| something_qualifies(&problem));
+    if qualifies {
         return Ok(report::reasons::something(eligible.sheet, &screen.data));
     }
     watched("searching", screen.shows_progress(), |_| {
