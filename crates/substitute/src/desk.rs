@@ -12,6 +12,7 @@ use design::proof::{AtRail, Fitted};
 use eligible::{Eligible, kind_of};
 use select::candidate::Proof;
 use select::problem::{Part, PassPart, SinkPart};
+use std::collections::{BTreeSet, HashMap};
 
 /// Names of parts that are not to be had: a part of every maker, or `maker/part`.
 #[derive(Debug, Clone, Default, PartialEq, Eq)]
@@ -33,13 +34,39 @@ pub struct Desk<'a> {
     pub eligible: Eligible<'a>,
     /// They at the conditions of the sheet.
     pub ground: Ground<'a>,
+    /// Of each slot, by `Slot as usize`, the places of the parts of a name; several makers may share one.
+    named: [HashMap<&'a str, Vec<u32>>; Slot::COUNT],
 }
 
 impl<'a> Desk<'a> {
     /// Reads every part at the rail of the sheet.
     pub fn new(eligible: Eligible<'a>) -> Self {
         let ground = Ground::new(eligible.problem());
-        Self { eligible, ground }
+        let named = Slot::ALL.map(|slot| {
+            let mut named: HashMap<&'a str, Vec<u32>> = HashMap::new();
+            for place in places(&ground, slot) {
+                if let Some((_, part)) = ground.name(slot, place) {
+                    named.entry(part).or_default().push(place);
+                }
+            }
+            named
+        });
+        Self { eligible, ground, named }
+    }
+
+    /// The places of a slot's list whose part a name means, rising.
+    fn meant(&self, slot: Slot, names: &Names) -> BTreeSet<u32> {
+        // A part or a maker may hold a slash, so every end of the name may be the part.
+        let ends = names.0.iter().flat_map(|name| {
+            let rests = name.match_indices('/').filter_map(|(at, _)| name.get(at + 1..));
+            std::iter::once(name.as_str()).chain(rests)
+        });
+        let of_name = ends.filter_map(|part| self.named[slot as usize].get(part)).flatten();
+        let means = |place: &u32| {
+            let name = self.ground.name(slot, *place);
+            name.is_some_and(|(maker, part)| names.mean(maker, part))
+        };
+        of_name.copied().filter(means).collect()
     }
 
     /// The slots of a design whose part a name means.
@@ -63,15 +90,17 @@ impl<'a> Desk<'a> {
         let at = parts.places();
         let may_be = |slot: Slot| {
             let here = at.iter().find(|place| place.slot == slot);
-            let is_gone = gone_slots[slot as usize];
-            let may = |place: &u32| {
-                let Some((maker, part)) = self.ground.name(slot, *place) else { return false };
-                let stands = here.is_some_and(|p| p.maker == maker && p.part == part);
-                let fits_with = !is_gone || with.is_none_or(|with| with.mean(maker, part));
-                !stands && fits_with && !gone.mean(maker, part)
-            };
-            let rows = u32::try_from(self.ground.rows(slot)).unwrap_or(u32::MAX);
-            (0..rows).filter(may).collect::<Vec<u32>>()
+            let mut barred = self.meant(slot, gone);
+            if let Some(here) = here {
+                let it = Some((here.maker, here.part));
+                let of_name = self.named[slot as usize].get(here.part).into_iter().flatten();
+                barred.extend(of_name.filter(|p| self.ground.name(slot, **p) == it));
+            }
+            let may = |place: &u32| !barred.contains(place);
+            match with.filter(|_| gone_slots[slot as usize]) {
+                Some(with) => self.meant(slot, with).into_iter().filter(may).collect(),
+                None => places(&self.ground, slot).filter(may).collect::<Vec<u32>>(),
+            }
         };
         let name = |slot: Slot| at.iter().find(|p| p.slot == slot).map(|p| (p.maker, p.part));
         let line_gone_twice = gone_slots[Slot::BiasLine as usize]
@@ -241,6 +270,11 @@ impl<'a> Desk<'a> {
             Slot::Heatsink => rows.heatsinks.get(at).map(|r| Offer::of(r, boards)),
         }
     }
+}
+
+/// The places of a slot's list.
+fn places(ground: &Ground<'_>, slot: Slot) -> std::ops::Range<u32> {
+    0..u32::try_from(ground.rows(slot)).unwrap_or(u32::MAX)
 }
 
 /// Package and pinout of a row; None: blank.

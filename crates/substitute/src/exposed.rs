@@ -30,7 +30,7 @@ pub fn replacements_at_once(case: &Case<'_, '_>) -> usize {
         if on_power.is_empty() {
             return 0;
         }
-        let holds = |choices: &&_| references.some_values_hold(choices, amplifier);
+        let holds = |of: &&_| references.some_values_hold(of, amplifier);
         on_power.len() * combinations.par_iter().filter(holds).count()
     };
     if case.is_gone(Slot::Amplifier) {

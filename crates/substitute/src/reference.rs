@@ -3,12 +3,13 @@
 use crate::built::{Case, Choice, Choices, Standing};
 use crate::change::Extent;
 use crate::ground::Line;
-use crate::values::{Beside, ValueFit};
+use crate::values::{Beside, HeldRz, ValueFit, held_rz, may_serve};
 use circuit::amplifier::AmplifierAtRail;
 use circuit::reference::ZenerAtRail;
 use circuit::resistor::{PotAtRail, Resistance};
 use circuit::slot::Slot;
 use rayon::prelude::*;
+use std::sync::OnceLock;
 
 /// The slots of this side.
 const SLOTS: [Slot; 4] = [Slot::Zener, Slot::BiasLine, Slot::DividerLine, Slot::Pot];
@@ -29,6 +30,15 @@ pub struct ReferenceFit {
     pub values: Vec<ValueFit>,
 }
 
+/// A choice of parts for this side.
+pub(crate) struct Combination {
+    /// What stands in the slots of this side; elsewhere all is kept.
+    pub choices: Choices,
+    /// Every RZ that holds. It depends on no amplifier, so it is found once, and only when some
+    /// amplifier asks for it.
+    held: OnceLock<Box<[HeldRz]>>,
+}
+
 /// The parts of one combination.
 struct Parts<'s> {
     zener: &'s ZenerAtRail,
@@ -45,7 +55,7 @@ pub(crate) struct References<'s, 'c, 'a> {
 
 impl<'s> References<'s, '_, '_> {
     /// Every choice of parts with so many further ones, whether it holds or not.
-    pub fn combinations(&self, further: u8) -> Vec<Choices> {
+    pub fn combinations(&self, further: u8) -> Vec<Combination> {
         let mut found = vec![(crate::built::ALL_KEPT, 0u8)];
         for slot in SLOTS {
             let case = self.case;
@@ -55,6 +65,9 @@ impl<'s> References<'s, '_, '_> {
             for (choices, so_far) in found {
                 if may_stay {
                     next.push((choices, so_far));
+                }
+                if !gone && so_far == further {
+                    continue;
                 }
                 for place in case.places(slot) {
                     let mut choices = choices;
@@ -74,7 +87,8 @@ impl<'s> References<'s, '_, '_> {
             found = next;
         }
         found.retain(|(_, so_far)| *so_far == further);
-        found.into_iter().map(|(choices, _)| choices).collect()
+        let found = found.into_iter();
+        found.map(|(choices, _)| Combination { choices, held: OnceLock::new() }).collect()
     }
 
     /// At least how many combinations there are with so many further parts; to judge the work.
@@ -104,10 +118,10 @@ impl<'s> References<'s, '_, '_> {
     /// Every reference side with so many further parts that holds beside an amplifier.
     pub fn holding(
         &self,
-        combinations: &[Choices],
+        combinations: &[Combination],
         amplifier: &AmplifierAtRail,
     ) -> Vec<ReferenceFit> {
-        let fit = |choices: &Choices| self.fit(*choices, amplifier);
+        let fit = |combination: &Combination| self.fit(combination, amplifier);
         if combinations.len() > MANY {
             combinations.par_iter().filter_map(fit).collect()
         } else {
@@ -116,13 +130,16 @@ impl<'s> References<'s, '_, '_> {
     }
 
     /// Some values hold with these parts.
-    pub fn some_values_hold(&self, choices: &Choices, amplifier: &AmplifierAtRail) -> bool {
-        self.parts(choices).is_some_and(|parts| self.beside(choices, &parts, amplifier).some_hold())
+    pub fn some_values_hold(&self, of: &Combination, amplifier: &AmplifierAtRail) -> bool {
+        let parts = self.parts(&of.choices);
+        let beside = parts.and_then(|parts| self.beside(of, &parts, amplifier));
+        beside.is_some_and(|beside| beside.some_hold())
     }
 
-    fn fit(&self, choices: Choices, amplifier: &AmplifierAtRail) -> Option<ReferenceFit> {
+    fn fit(&self, of: &Combination, amplifier: &AmplifierAtRail) -> Option<ReferenceFit> {
+        let choices = of.choices;
         let parts = self.parts(&choices)?;
-        let values = self.beside(&choices, &parts, amplifier).fewest_changes();
+        let values = self.beside(of, &parts, amplifier)?.fewest_changes();
         let changed = values.first()?.changed;
         let extent = SLOTS
             .into_iter()
@@ -206,13 +223,18 @@ impl<'s> References<'s, '_, '_> {
         })
     }
 
+    /// None where a necessary condition tells that no values do.
     fn beside<'r>(
         &'r self,
-        choices: &Choices,
+        of: &'r Combination,
         parts: &Parts<'r>,
         amplifier: &'r AmplifierAtRail,
-    ) -> Beside<'r> {
-        let built = &self.case.built;
+    ) -> Option<Beside<'r>> {
+        let (built, choices) = (&self.case.built, &of.choices);
+        let (rail, aim) = (self.case.ground.rail(), &self.case.ground.aim);
+        if !may_serve(parts.zener, amplifier, (aim, parts.divider_line.spread), rail) {
+            return None;
+        }
         let stocked = |line: &Line, ohm: f64| {
             line.at_rail.values.iter().find(|v| crate::built::same_ohm(v.ohm, ohm)).copied()
         };
@@ -224,18 +246,22 @@ impl<'s> References<'s, '_, '_> {
             _ => stocked(line, ohm),
         };
         let Standing { rz, upper, ri, .. } = *self.standing;
-        Beside {
-            rail: self.case.ground.rail(),
-            aim: &self.case.ground.aim,
+        let held = of.held.get_or_init(|| {
+            let rz = as_built(Slot::BiasLine, parts.bias_line, built.rz_ohm, rz);
+            held_rz(parts.zener, parts.bias_line, rz, built.rz_ohm, rail)
+        });
+        (!held.is_empty()).then_some(Beside {
+            rail,
+            aim,
             zener: parts.zener,
             bias_line: parts.bias_line,
             divider_line: parts.divider_line,
             pot: parts.pot,
             amplifier,
-            rz: as_built(Slot::BiasLine, parts.bias_line, built.rz_ohm, rz),
+            held,
             upper: as_built(Slot::DividerLine, parts.divider_line, built.upper_ohm, upper),
             ri: as_built(Slot::DividerLine, parts.divider_line, built.ri_ohm, ri),
-            built_ohm: [built.rz_ohm, built.upper_ohm, built.ri_ohm],
-        }
+            built_ohm: [built.upper_ohm, built.ri_ohm],
+        })
     }
 }

@@ -14,7 +14,7 @@
 use crate::built::{ALL_KEPT, Case, Choice, Choices, Standing};
 use crate::change::Extent;
 use crate::power::{PowerFit, Powers};
-use crate::reference::{ReferenceFit, References};
+use crate::reference::{Combination, ReferenceFit, References};
 use crate::values::ValueFit;
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::supply_checks;
@@ -68,7 +68,7 @@ pub struct Replacements {
 impl Replacements {
     /// The list holds every replacement there is.
     pub fn nothing_else_helps(&self) -> bool {
-        !self.too_many && self.looked_further == MOST_FURTHER
+        !self.too_many && !self.paired_in_part && self.looked_further == MOST_FURTHER
     }
 }
 
@@ -170,7 +170,7 @@ struct Finder<'s, 'c, 'a> {
     powers: Powers<'s, 'c, 'a>,
     /// By number of further parts: looked up once.
     power_fits: Vec<Vec<PowerFit>>,
-    reference_combinations: Vec<Vec<Choices>>,
+    reference_combinations: Vec<Vec<Combination>>,
 }
 
 impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
@@ -287,10 +287,10 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
             if references.len().saturating_mul(powers.len()) > MOST_PAIRS {
                 cut = true;
                 let keep = (MOST_PAIRS as f64).sqrt() as usize;
-                references.sort_by_key(|(_, offers)| offers.extent);
-                references.truncate(keep);
-                powers.sort_by_key(|(_, offers)| offers.extent);
-                powers.truncate(keep);
+                let least =
+                    |costs: &mut dyn Iterator<Item = f64>| costs.fold(f64::INFINITY, f64::min);
+                keep_best(&mut references, keep, |r| least(&mut r.iter().map(|p| p.cost)));
+                keep_best(&mut powers, keep, |p| least(&mut p.iter().map(|(fit, _)| fit.cost)));
             }
             let of_amplifier = case.extent(Slot::Amplifier, beside.choice);
             for (reference_label, reference) in &references {
@@ -405,6 +405,21 @@ fn best_powers(
         });
     }
     best.into_iter().collect()
+}
+
+/// Keeps so many labels: those that change least, of equal ones the cheapest.
+fn keep_best<T>(
+    sides: &mut Vec<(Choices, Offers<T>)>,
+    keep: usize,
+    least_cost: impl Fn(&[T]) -> f64,
+) {
+    sides.sort_by(|(a_label, a), (b_label, b)| {
+        a.extent
+            .cmp(&b.extent)
+            .then_with(|| least_cost(&a.points).total_cmp(&least_cost(&b.points)))
+            .then_with(|| a_label.cmp(b_label))
+    });
+    sides.truncate(keep);
 }
 
 /// The offers of a label where an extent is no more than theirs; larger ones are thrown away first.

@@ -18,6 +18,57 @@ use std::ops::ControlFlow::{self, Break, Continue};
 /// Room left for rounding where values are passed over without a check.
 const ROUNDING_ROOM: f64 = 1e-8;
 
+/// A bias resistor with which a zener by itself holds, whatever the amplifier and the divider.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct HeldRz {
+    /// The zener with this RZ.
+    pub bias: Bias,
+    /// Greatest utilisation of the damage checks of the two.
+    pub stress: f64,
+    /// RZ has the value as built.
+    pub as_built: bool,
+}
+
+/// Every RZ with which a zener by itself holds: the one as built, then other values of the line, the
+/// larger first. `built` is None where the line does not stock that value.
+pub fn held_rz(
+    zener: &ZenerAtRail,
+    line: &Line,
+    built: Option<Resistance>,
+    built_ohm: f64,
+    rail: &Rail,
+) -> Box<[HeldRz]> {
+    let values = &line.at_rail.values;
+    let (least, most) = (zener.smallest_rz_ohm(rail), zener.largest_rz_ohm(rail));
+    let from = values.partition_point(|v| v.lo_ohm < least);
+    let to = values.partition_point(|v| v.hi_ohm <= most);
+    let possible = values.get(from..to).unwrap_or_default();
+    let others = possible.iter().rev().filter(|rz| !same_ohm(rz.ohm, built_ohm));
+    let all = built.iter().map(|rz| (*rz, true)).chain(others.map(|rz| (*rz, false)));
+    let held = |(rz, as_built)| {
+        let bias = zener.bias(rz, rail);
+        let stress = zener.verdict(&bias, &line.at_rail).ok()?;
+        Some(HeldRz { bias, stress, as_built })
+    };
+    all.filter_map(held).collect()
+}
+
+/// A zener may serve beside an amplifier with some RZ and divider of a line; false only where none does.
+///
+/// At no power V0lo is the highest and V0hi the lowest that any RZ leaves: see
+/// [`ZenerAtRail::test_voltage`]; a droop only lowers VZlo, and impedance only raises VZhi.
+pub fn may_serve(
+    zener: &ZenerAtRail,
+    amplifier: &AmplifierAtRail,
+    (aim, spread): (&Aim, f64),
+    rail: &Rail,
+) -> bool {
+    let v0 = zener.test_voltage(0.0, rail);
+    amplifier.amp_input_low(v0.lo_v).holds()
+        && amplifier.amp_input_high(v0.hi_v, rail).holds()
+        && aim.may_suit(v0.lo_v, v0.hi_v, amplifier.input_error(v0.hi_v).error_v, spread)
+}
+
 /// The parts that resistors are chosen beside, and the resistors as built.
 #[derive(Debug, Clone, Copy)]
 pub struct Beside<'r> {
@@ -35,14 +86,14 @@ pub struct Beside<'r> {
     pub pot: Option<&'r PotAtRail>,
     /// The amplifier.
     pub amplifier: &'r AmplifierAtRail,
-    /// RZ as built; None where its line does not stock it.
-    pub rz: Option<Resistance>,
-    /// RF or RX as built.
+    /// Every RZ with which zener and line by themselves hold.
+    pub held: &'r [HeldRz],
+    /// RF or RX as built; None where its line does not stock it.
     pub upper: Option<Resistance>,
     /// RI as built.
     pub ri: Option<Resistance>,
-    /// The values as built, Ω: RZ, RF or RX, RI.
-    pub built_ohm: [f64; 3],
+    /// RF or RX, and RI as built, Ω.
+    pub built_ohm: [f64; 2],
 }
 
 /// Values with which every check holds that they have a part in.
@@ -112,8 +163,10 @@ impl<'r> Beside<'r> {
 
     /// Some values hold.
     pub fn some_hold(&self) -> bool {
-        self.usual_values_hold()
-            || (0..=3).any(|count| {
+        let as_built = Changes::of(0).any(|none| self.each(none, &mut |_| Break(())).is_break());
+        as_built
+            || self.usual_values_hold()
+            || (1..=3).any(|count| {
                 Changes::of(count).any(|changes| self.each(changes, &mut |_| Break(())).is_break())
             })
     }
@@ -136,52 +189,33 @@ impl<'r> Beside<'r> {
         changes: Changes,
         found: &mut impl FnMut(ValueFit) -> ControlFlow<()>,
     ) -> ControlFlow<()> {
-        let [rz_ohm, ..] = self.built_ohm;
-        if !changes.rz {
-            return match self.rz {
-                Some(rz) => self.each_beside(rz, changes, found),
-                None => Continue(()),
-            };
-        }
-        for rz in self.possible_rz().iter().rev().filter(|rz| !same_ohm(rz.ohm, rz_ohm)) {
-            self.each_beside(*rz, changes, found)?;
-        }
-        Continue(())
-    }
-
-    /// The values of RZ that necessary conditions leave.
-    fn possible_rz(&self) -> &'r [Resistance] {
-        let values = &self.bias_line.at_rail.values;
-        let (least, most) =
-            (self.zener.smallest_rz_ohm(self.rail), self.zener.largest_rz_ohm(self.rail));
-        let from = values.partition_point(|v| v.lo_ohm < least);
-        let to = values.partition_point(|v| v.hi_ohm <= most);
-        values.get(from..to).unwrap_or_default()
+        let of_these = |held: &&HeldRz| held.as_built != changes.rz;
+        self.held
+            .iter()
+            .filter(of_these)
+            .try_for_each(|held| self.each_beside(held, changes, found))
     }
 
     /// As [`Beside::each`], for one RZ.
     fn each_beside(
         &self,
-        rz: Resistance,
+        held: &HeldRz,
         changes: Changes,
         found: &mut impl FnMut(ValueFit) -> ControlFlow<()>,
     ) -> ControlFlow<()> {
-        let bias = self.zener.bias(rz, self.rail);
-        let Ok(reference_stress) = self.zener.verdict(&bias, &self.bias_line.at_rail) else {
-            return Continue(());
-        };
+        let HeldRz { bias, stress: reference_stress, .. } = *held;
         let input = self.amplifier.input_error(bias.vz_hi_v);
         let spread = self.divider_line.spread;
         if !self.aim.may_suit(bias.vz_lo_v, bias.vz_hi_v, input.error_v, spread) {
             return Continue(());
         }
-        let [_, upper_ohm, ri_ohm] = self.built_ohm;
+        let [upper_ohm, ri_ohm] = self.built_ohm;
         let line = &self.divider_line.at_rail;
         let mut take = |upper: Resistance, ri: Resistance| {
             let divider = Divider { upper, ri };
             let Some(stress) = self.holds(&bias, divider) else { return Continue(()) };
             found(ValueFit {
-                rz,
+                rz: bias.rz,
                 divider,
                 changed: u8::from(changes.rz) + u8::from(changes.upper) + u8::from(changes.ri),
                 stress: stress.max(reference_stress),
