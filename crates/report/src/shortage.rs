@@ -18,10 +18,12 @@ pub mod terminal;
 
 use crate::figure::{Figure, Pairs};
 use crate::substitute::fit::Fit;
-use crate::substitute::mend::Mend;
+use crate::substitute::mend::{Mend, trouble};
 use crate::substitute::{GonePart, Looked, Subject, gone_parts};
-use ::substitute::desk::Names;
-use ::substitute::shortage::{Affected, CoverOfAll};
+use ::substitute::desk::{Names, Offer, changed_slots};
+use ::substitute::shortage::{Affected, CoverOfAll, PartName};
+use circuit::slot::Slot;
+use eligible::kind_of;
 use serde::Serialize;
 
 /// The format that these types write.
@@ -101,7 +103,7 @@ pub struct CoverFound {
 }
 
 /// A new part.
-#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+#[derive(Debug, Clone, PartialEq, Serialize)]
 pub struct CoverPart {
     /// `maker/part`.
     pub part: String,
@@ -111,6 +113,14 @@ pub struct CoverPart {
     pub designs: usize,
     /// Pieces for all their boards.
     pub pieces: u64,
+    /// Pieces in stock; None: blank.
+    pub stock: Option<Figure>,
+    /// Weeks until an order arrives; None: blank.
+    pub lead_weeks: Option<Figure>,
+    /// The life-cycle word.
+    pub status: Option<&'static str>,
+    /// What is amiss with it for all boards together: see [`trouble`].
+    pub trouble: Vec<String>,
 }
 
 /// What is taken for a design.
@@ -176,7 +186,7 @@ impl CoverFound {
                 None => left_out.push(subject.file.to_owned()),
             }
         }
-        let part = |name: &::substitute::shortage::PartName| {
+        let part = |name: &PartName| {
             let full = name.full_name();
             let takes = |(pick, subject): &&(Pick, &Subject<'_, '_>)| {
                 let slots = pick.mend.parts.iter().filter(|p| p.is.as_deref() == Some(&full));
@@ -184,11 +194,17 @@ impl CoverFound {
             };
             let taken: Vec<(u64, u64)> =
                 picks.iter().map(|p| takes(&p)).filter(|(slots, _)| *slots > 0).collect();
+            let pieces = taken.iter().map(|(slots, boards)| slots * boards).sum();
+            let offer = offered(name, affected, &all.cover.picks, subjects);
             CoverPart {
+                stock: offer.as_ref().and_then(|(_, o)| o.stock).map(Figure),
+                lead_weeks: offer.as_ref().and_then(|(_, o)| o.lead_weeks).map(Figure),
+                status: offer.as_ref().map(|(_, o)| o.status.name()),
+                trouble: offer.map(|(slot, o)| trouble(slot, &o, pieces)).unwrap_or_default(),
                 part: full.clone(),
                 file: name.kind.file_name(),
                 designs: taken.len(),
-                pieces: taken.iter().map(|(slots, boards)| slots * boards).sum(),
+                pieces,
             }
         };
         let parts: Vec<CoverPart> = all.parts.iter().map(part).collect();
@@ -197,4 +213,25 @@ impl CoverFound {
         let any = !picks.is_empty() || !left_out.is_empty();
         any.then_some(Self { parts, cost, exact: all.cover.exact, left_out, picks })
     }
+}
+
+/// The row of a part that some pick puts in, with the slot that it goes into there.
+fn offered(
+    name: &PartName,
+    affected: &[Affected],
+    picks: &[Option<usize>],
+    subjects: &[Subject<'_, '_>],
+) -> Option<(Slot, Offer)> {
+    let picked = picks.iter().zip(affected).zip(subjects);
+    picked
+        .filter_map(|((pick, affected), subject)| {
+            Some((affected.found.list.get((*pick)?)?, subject.desk))
+        })
+        .find_map(|(replacement, desk)| {
+            changed_slots(&replacement.choices).find_map(|slot| {
+                let offer = desk.offer(slot, replacement.choices[slot as usize])?;
+                let is_it = offer.maker == name.maker && offer.part == name.part;
+                (is_it && kind_of(slot) == name.kind).then_some((slot, offer))
+            })
+        })
 }

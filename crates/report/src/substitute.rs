@@ -87,12 +87,16 @@ pub struct GonePart {
 /// How far replacements were looked for.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Serialize)]
 pub struct Looked {
-    /// All changes with at most so many further parts.
-    pub further_parts: u8,
+    /// All changes with at most so many further parts; None: none, for the parts that are gone make too
+    /// many combinations.
+    pub further_parts: Option<u8>,
     /// That is every change there is.
     pub everything: bool,
     /// More further parts were left out because they make too many combinations.
     pub too_many: bool,
+    /// Several parts are gone, and of too many pairs of replacements only those of the best were looked
+    /// at: a better pair may be missing.
+    pub paired_in_part: bool,
     /// How many replacements there are as far as it was looked, those left out of the list among them.
     pub found: usize,
 }
@@ -104,6 +108,7 @@ impl Looked {
             further_parts: found.looked_further,
             everything: found.nothing_else_helps(),
             too_many: found.too_many,
+            paired_in_part: found.paired_in_part,
             found: found.list.len(),
         }
     }

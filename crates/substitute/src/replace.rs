@@ -57,18 +57,20 @@ pub struct Replacements {
     /// The replacements in order: by extent, score, cost, stress, loss, then names. Each part that can
     /// replace what is gone stands once, with the least that changes with it.
     pub list: Vec<Replacement>,
-    /// All changes with at most so many further parts were looked at.
-    pub looked_further: u8,
+    /// All changes with at most so many further parts were looked at. None: not even those with none, for
+    /// the parts that are gone make too many combinations.
+    pub looked_further: Option<u8>,
     /// More further parts were left out because they make too many combinations.
     pub too_many: bool,
-    /// Pairs of replacements on both sides were so many that only the best of each side were paired.
+    /// Several parts are gone, and their replacements make so many pairs that only some were looked at:
+    /// the best of each side, and the best amplifiers. Then a better pair may be missing.
     pub paired_in_part: bool,
 }
 
 impl Replacements {
     /// The list holds every replacement there is.
     pub fn nothing_else_helps(&self) -> bool {
-        !self.too_many && !self.paired_in_part && self.looked_further == MOST_FURTHER
+        !self.too_many && !self.paired_in_part && self.looked_further == Some(MOST_FURTHER)
     }
 }
 
@@ -84,8 +86,12 @@ const MOST_FOR_MORE: f64 = 2e6;
 /// A combination on the reference side takes as long as so many elsewhere: values are tried there.
 const WEIGHT_OF_VALUES: f64 = 300.0;
 
-/// Where parts are gone on both sides, so many pairs of replacements are looked at.
+/// Where several parts are gone, so many pairs of replacements are looked at.
 const MOST_PAIRS: usize = 200_000;
+
+/// Where the amplifier and other parts are gone, work for so many amplifiers is done, by the measure of
+/// [`Finder::combinations`].
+const MOST_BESIDE_AMPLIFIERS: f64 = 3e7;
 
 /// How far to look.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -104,12 +110,12 @@ pub fn replacements(case: &Case<'_, '_>, until: Until) -> Replacements {
     let mut best: HashMap<Choices, Replacement> = HashMap::new();
     for further in 0..=MOST_FURTHER {
         let most = if best.is_empty() { MOST_COMBINATIONS } else { MOST_FOR_MORE };
-        if finder.combinations(further) > most {
+        if finder.combinations(further) > most && !(further == 0 && finder.can_thin()) {
             found.too_many = true;
             break;
         }
         finder.level(further, &mut best, &mut found.paired_in_part);
-        found.looked_further = further;
+        found.looked_further = Some(further);
         let enough = match until {
             Until::Found(many) => best.len() >= many,
             Until::Further(most) => further >= most,
@@ -187,20 +193,65 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
 
     /// How many combinations a number of further parts makes, weighed by the work.
     fn combinations(&self, further: u8) -> f64 {
-        let of_sides = |further: u8| {
-            let pairs = (0..=further).map(|r| {
-                let (r, p) = (self.references.count(r), self.powers.count(further - r));
-                // The sides are looked through one after the other.
-                if r == 0.0 || p == 0.0 { 0.0 } else { r * WEIGHT_OF_VALUES + p }
-            });
-            pairs.sum::<f64>()
-        };
         let amplifiers = self.case.places(Slot::Amplifier).len() as f64;
         if self.case.is_gone(Slot::Amplifier) {
-            return amplifiers * of_sides(further);
+            return amplifiers * self.of_sides(further);
         }
-        let changed = further.checked_sub(1).map_or(0.0, |rest| amplifiers * of_sides(rest));
-        changed + if self.standing.amplifier.is_some() { of_sides(further) } else { 0.0 }
+        let changed = further.checked_sub(1).map_or(0.0, |rest| amplifiers * self.of_sides(rest));
+        changed + if self.standing.amplifier.is_some() { self.of_sides(further) } else { 0.0 }
+    }
+
+    /// The work beside one amplifier with so many further parts.
+    fn of_sides(&self, further: u8) -> f64 {
+        let pairs = (0..=further).map(|r| {
+            let (r, p) = (self.references.count(r), self.powers.count(further - r));
+            // The sides are looked through one after the other.
+            if r == 0.0 || p == 0.0 { 0.0 } else { r * WEIGHT_OF_VALUES + p }
+        });
+        pairs.sum()
+    }
+
+    /// How many replacements the other parts that are gone have at most beside one amplifier.
+    fn others(&self) -> f64 {
+        let gone = Slot::ALL.into_iter().filter(|slot| self.case.is_gone(*slot));
+        let rest = gone.filter(|slot| *slot != Slot::Amplifier);
+        rest.map(|slot| self.case.places(slot).len().max(1) as f64).product()
+    }
+
+    /// The amplifier is gone and others as well, so that the work can be kept to some amplifiers.
+    fn can_thin(&self) -> bool {
+        let sides_alone = self.of_sides(0) <= MOST_BESIDE_AMPLIFIERS;
+        self.case.is_gone(Slot::Amplifier) && self.others() > 1.0 && sides_alone
+    }
+
+    /// The amplifiers that are tried: where it is gone with other parts and all pairs would be too many,
+    /// those that change least, of equals the cheapest.
+    fn amplifiers(&self, further: u8) -> Vec<u32> {
+        let (case, rail) = (self.case, self.case.ground.rail());
+        let places = case.places(Slot::Amplifier);
+        if !self.can_thin() {
+            return places.to_vec();
+        }
+        let by_work = MOST_BESIDE_AMPLIFIERS / self.of_sides(further).max(1.0);
+        let most = by_work.min(MOST_PAIRS as f64 / self.others()).max(1.0);
+        if places.len() as f64 <= most {
+            return places.to_vec();
+        }
+        let of = |place: &u32| {
+            let amplifier = case.ground.amplifiers.get(*place as usize)?;
+            WhileHolding::over(|t| supply_checks(amplifier, rail, t)).ok()?;
+            let powers = self.power_fits.first()?;
+            let drives = |fit: &PowerFit| {
+                WhileHolding::over(|t| drive::checks(amplifier, &fit.figures, rail, t)).is_ok()
+            };
+            let price = case.ground.problem.amplifiers.get(*place as usize)?.price;
+            let extent = case.extent(Slot::Amplifier, Choice::Row(*place));
+            powers.iter().any(drives).then_some((extent, price, *place))
+        };
+        let mut able: Vec<(Extent, f64, u32)> = places.par_iter().filter_map(of).collect();
+        able.sort_by(|a, b| a.0.cmp(&b.0).then(compare(a.1, b.1)).then(a.2.cmp(&b.2)));
+        able.truncate(most as usize);
+        able.into_iter().map(|(_, _, place)| place).collect()
     }
 
     /// Adds the replacements that take exactly so many further parts.
@@ -233,7 +284,8 @@ impl<'s, 'c, 'a> Finder<'s, 'c, 'a> {
                 let beside = Amplified { choice: Choice::Row(*place), amplifier, price };
                 Some(self.beside(&beside, rest, solved))
             };
-            let places = self.case.places(Slot::Amplifier);
+            let places = self.amplifiers(rest);
+            *paired_in_part |= places.len() < self.case.places(Slot::Amplifier).len() && gone;
             let found: Vec<_> = places.par_iter().filter_map(beside).collect();
             for (found, cut) in found {
                 level.extend(found);

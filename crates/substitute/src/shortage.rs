@@ -139,7 +139,9 @@ pub fn cover_all<'a>(
         };
         designs.push(design.found.list.iter().map(option).collect());
     }
-    let cover = cover(&designs, &stock);
+    let mut cover = cover(&designs, &stock);
+    // Nothing is proven over pairs that were not looked at.
+    cover.exact &= !affected.iter().any(|design| design.found.paired_in_part);
     let name = |number: &u32| names.get(*number as usize).copied();
     let parts = cover.parts.iter().filter_map(name).map(|(kind, maker, part)| PartName {
         kind,

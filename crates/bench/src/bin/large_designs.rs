@@ -53,7 +53,9 @@ fn write_all(dir: &Path, rows: usize, designs: usize) -> Result<usize, Box<dyn E
     std::fs::create_dir_all(dir.join("sheets"))?;
     std::fs::create_dir_all(dir.join("designs"))?;
     let shop = read_shop(dir)?;
-    let sheets = rail_sheets(&order);
+    // One sheet is made so that nothing qualifies.
+    let admits = |(name, _): &(&str, String)| *name != "impossible.toml";
+    let sheets: Vec<_> = rail_sheets(&order).into_iter().filter(admits).collect();
     let each = designs.div_ceil(sheets.len() * LOADS.len());
     let mut written = 0;
     for (name, text) in &sheets {

@@ -26,11 +26,15 @@ pub const DESIGNS: [Column; 14] = [
 ];
 
 /// The columns of the new parts.
-pub const COVER: [Column; 4] = [
+pub const COVER: [Column; 8] = [
     Column::text("new part", "a part that goes in"),
     Column::text("catalog", "where it stands"),
     Column::whole("designs", "designs that take it"),
     Column::whole("pieces", "pieces for all their boards"),
+    Column::whole("stock", "pieces in stock; blank where the catalog tells none"),
+    Column::number("weeks", "", "weeks until an order arrives"),
+    Column::text("status", "life-cycle word"),
+    Column::text("trouble", "too few pieces in stock for all boards, or a part that is going"),
 ];
 
 /// The columns of what is taken for each design.
@@ -112,6 +116,10 @@ pub fn cover(of: &Shortage) -> Table {
                 part.file.into(),
                 part.designs.into(),
                 part.pieces.into(),
+                part.stock.into(),
+                part.lead_weeks.into(),
+                part.status.into(),
+                part.trouble.join("; ").into(),
             ]
         })
         .collect();

@@ -15,14 +15,17 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
     let (lost, hit) = (of.designs.iter().filter(|d| d.is_lost()).count(), of.designs.len());
     let found = match hit {
         0 => "No design uses it.".to_owned(),
-        hit => format!("{hit} {}; {lost} of them can't be saved.", uses(hit)),
+        hit => format!("{hit} {}; {}.", uses(hit), saved(of, lost)),
     };
     text += &look.paragraph(&found, 0, 2);
     // A reason that several designs of a sheet share is told once.
     let mut told: Vec<(&str, &str)> = Vec::new();
     for design in of.designs.iter().filter(|design| design.is_lost()) {
         text.push('\n');
-        let heading = format!("Can't be saved: {}", short(&design.file, of));
+        let heading = match design.looked.everything {
+            true => format!("Can't be saved: {}", short(&design.file, of)),
+            false => format!("Nothing found for {}", short(&design.file, of)),
+        };
         text += &look.heading(&heading);
         text.push('\n');
         let looked = format!("{}; looked at: {}.", design.name, how_far(&design.looked));
@@ -66,7 +69,15 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
         text.push('\n');
         text += &look.paragraph(&in_words(found, of), 0, 2);
         text.push('\n');
-        text += &screen::table(&cover(of), &["new part", "designs", "pieces"], look);
+        text += &screen::table(
+            &cover(of),
+            &["new part", "designs", "pieces", "stock", "weeks", "status"],
+            look,
+        );
+        for part in found.parts.iter().filter(|part| !part.trouble.is_empty()) {
+            let remark = format!("! {}: {}", part.part, part.trouble.join(", "));
+            text += &look.paragraph(&remark, 0, 2);
+        }
         text.push('\n');
         let shown = ["design", "takes", "also changes", "board", "cost"];
         text += &screen::table(&shortened(picks(of), &["takes"]), &shown, look);
@@ -78,6 +89,18 @@ pub fn shortage(of: &Shortage, look: &Look) -> String {
         text += &screen::table(&broken(&of.broken), &BROKEN.map(|c| c.heading), look);
     }
     text
+}
+
+/// How many of the affected designs have a replacement.
+fn saved(of: &Shortage, lost: usize) -> String {
+    let surely = of.designs.iter().filter(|d| d.is_lost() && d.looked.everything).count();
+    match (lost, lost - surely) {
+        (0, _) => "each can be saved".to_owned(),
+        (_, 0) => format!("{lost} of them can't be saved"),
+        (_, open) => format!(
+            "{surely} of them can't be saved, and for {open} nothing was found as far as it was looked"
+        ),
+    }
 }
 
 /// A design's file as seen from the folder, without its ending, which all have.
@@ -136,7 +159,10 @@ fn in_words(found: &CoverFound, of: &Shortage) -> String {
     };
     let proven = match found.exact {
         true => "no fewer do, and none as few cost less",
-        false => "the search gave up before it had shown that no fewer do",
+        false if of.designs.iter().any(|design| design.looked.paired_in_part) => {
+            "not proven, for of some design not every pair of replacements was looked at"
+        }
+        false => "not proven, for the search gave up before it had shown that no fewer do",
     };
     let left_out = match found.left_out.as_slice() {
         [] => String::new(),

@@ -108,11 +108,20 @@ fn nothing(of: &Substitution) -> String {
 /// How far it was looked, as a clause.
 pub(crate) fn how_far(looked: &Looked) -> String {
     let parts = match looked.further_parts {
-        0 => "with no further part changed".to_owned(),
-        1 => "with at most 1 further part changed".to_owned(),
-        n => format!("with at most {n} further parts changed"),
+        None => {
+            return "nothing, for the parts that are gone make too many combinations".to_owned();
+        }
+        Some(0) => "with no further part changed".to_owned(),
+        Some(1) => "with at most 1 further part changed".to_owned(),
+        Some(n) => format!("with at most {n} further parts changed"),
     };
     let more = if looked.too_many { "; more make too many combinations" } else { "" };
+    if looked.paired_in_part {
+        return format!(
+            "changes {parts}, but of the pairs of replacements for what is gone only those of the best \
+             parts: a better pair may be missing{more}"
+        );
+    }
     format!("every change {parts}{more}")
 }
 
