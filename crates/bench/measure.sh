@@ -77,6 +77,15 @@ done
 printf '\n## Exact counts, 10 000 rows a catalog (one run)\n\n'
 "$bin/stages" "$shops/rows-10000" "$shops/rows-10000/fixed-12v.toml" --count | grep -E '^(shortlist|count)'
 
+printf '\n## Shortages, 1 000 designs, 10 000 rows a catalog: wall s, processor s, peak MB\n\n'
+[ -d "$shops/designs/designs" ] || "$bin/large-designs" "$shops/designs"
+# used KEY: the part that most designs have in a slot.
+used() { grep -h "^$1 " "$shops"/designs/designs/*.toml | sort | uniq -c | sort -rn | awk -F'"' 'NR == 1 { print $2 }'; }
+for part in "$(used zener)" "$(used amplifier)" "$(used pass)" "$(used heatsink)" "$(used divider_line)" --exposed; do
+    printf '%s: %s\n' "$part" "$(median "$bin/railwright" shortage "$part" --designs "$shops/designs/designs" \
+        --catalogs "$shops/designs" --quiet)"
+done
+
 printf '\n## Hard shops: the list of ten (one run each)\n\n'
 for kind in ties undominated last-check mixed-reasons one-check; do
     for count in 1000 3000 10000; do
