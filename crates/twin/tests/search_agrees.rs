@@ -142,7 +142,7 @@ fn parts_that_differ_in_one_figure_are_counted_apart() {
         };
         add("the same", |_| {});
         add("end", |pot| pot.end_ohm = 0.05 * pot.value_ohm);
-        add("tolerance", |pot| pot.tol = 0.9 * pot.tol);
+        add("tolerance", |pot| pot.tol *= 0.9);
         add("power", |pot| pot.rating.power_w *= 0.05);
         add("voltage", |pot| pot.vmax_v = Some(2.0));
         let mut add = |name: &str, change: fn(&mut ResistorLine)| {
