@@ -8,7 +8,7 @@
 //! The same two lists beside the best figures of a box of amplifiers bound every amplifier of the box.
 //! Boxes are taken in the order of the best that they could do, and one is left out when something on
 //! the front already beats every pair that it could have. The lists of a box are made from those of
-//! the box that it is a part of, see [`Unbeaten`].
+//! the box that it is a part of, see `unbeaten`.
 
 use crate::beside::{AmplifierNode, Powers, References};
 use crate::candidate::Candidate;
