@@ -8,8 +8,8 @@
 //!
 //! | module | what it holds |
 //! |---|---|
-//! | [`row`] | a row with blanks, and the ways of filling them that are tried |
-//! | [`narrow`] | what each blank would have to hold |
+//! | `row` | a row with blanks, and the ways of filling them that are tried |
+//! | `narrow` | what each blank would have to hold |
 //!
 //! Rows of one kind are always tried together, in one search that ends where the list does: most are out
 //! of reach, and to see that costs no more than the bounds of the search.
