@@ -91,6 +91,7 @@ pub(crate) fn acts_on_terminal(c: char) -> bool {
 fn in_ascii(c: char) -> &'static str {
     match c {
         'Ω' | '\u{2126}' => "ohm",
+        '→' => "->",
         '°' => "deg",
         'µ' | 'μ' => "u",
         'η' => "eta",

@@ -24,6 +24,12 @@ const SHOWN: [&str; 10] = [
     "status",
 ];
 
+/// Columns of text from which on the list shows every column.
+const WIDE: usize = 76;
+
+/// Columns of the list that a narrow terminal goes without.
+const LEFT_OUT: [&str; 3] = ["margin", "slack", "weeks"];
+
 /// The whole text. One replacement, or one that was named, is told with every check.
 pub fn substitution(of: &Substitution, look: &Look) -> String {
     let mut text = look.heading(&of.name);
@@ -127,7 +133,9 @@ pub(crate) fn how_far(looked: &Looked) -> String {
 
 fn list(of: &Substitution, look: &Look) -> String {
     let mut text = String::from("\n");
-    text += &screen::table(&narrow(of), &SHOWN, look);
+    // On a narrow terminal fewer columns, so that no word is broken; files hold them all.
+    let shown = SHOWN.iter().filter(|c| look.width >= WIDE || !LEFT_OUT.contains(c)).copied();
+    text += &screen::table(&narrow(of), &shown.collect::<Vec<_>>(), look);
     text.push('\n');
     let shown = of.replacements.len();
     let looked = how_far(&of.looked);
