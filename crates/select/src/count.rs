@@ -115,7 +115,8 @@ struct Progress<'a> {
 /// The work of choosing one divider and asking amplifiers about it, in the unit of [`Progress`].
 const DIVIDER_WORK: u64 = 1;
 
-/// The work of asking one amplifier about all transistors, in the same unit; as measured in large shops.
+/// The work of asking one amplifier about all transistors, in the same unit: about what it is in large shops,
+/// for it only weighs the two stages of the progress against each other.
 const DRIVE_WORK: u64 = 300;
 
 impl<'a> Progress<'a> {
