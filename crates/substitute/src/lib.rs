@@ -6,7 +6,7 @@
 //! | [`ground`] | the parts that may be chosen, at the conditions of a rail: made once for a sheet |
 //! | [`built`] | the design as built, and which of its parts are gone |
 //! | [`values`] | resistor values beside given parts, the fewest changed first |
-//! | [`reference`], [`power`] | what can stand on either side of the amplifier |
+//! | [`mod@reference`], [`power`] | what can stand on either side of the amplifier |
 //! | [`replace`] | every replacement with the least that changes with it |
 //! | [`cover`] | the fewest new parts for many designs, then the cheapest |
 //! | [`exposed`] | how many replacements a part has |
