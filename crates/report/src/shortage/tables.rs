@@ -1,10 +1,7 @@
 //! A shortage as tables.
 
 use super::{Broken, Shortage};
-use crate::substitute::mend::Mend;
-use crate::substitute::tables::{
-    also_changes, board_words, goes_in, money, same_numbers, troubles,
-};
+use crate::substitute::tables::{also_changes, board_words, goes_in, money, replacement};
 use crate::table::{Cell, Column, Document, Table};
 
 /// The columns of designs and their replacements.
@@ -85,24 +82,6 @@ pub fn designs(of: &Shortage) -> Table {
         }
     }
     table
-}
-
-fn replacement(mend: &Mend) -> Vec<Cell> {
-    let first = mend.replacing().next();
-    vec![
-        mend.rank.into(),
-        goes_in(mend).into(),
-        also_changes(mend).into(),
-        first.map(|part| board_words(part.on_board)).into(),
-        money(mend.after.cost),
-        mend.after.margin.into(),
-        mend.after.slack.into(),
-        first.and_then(|part| part.stock).into(),
-        first.and_then(|part| part.lead_weeks).into(),
-        first.and_then(|part| part.status).into(),
-        troubles(mend).join("; ").into(),
-        same_numbers(mend).join("; ").into(),
-    ]
 }
 
 /// The new parts.

@@ -47,6 +47,24 @@ pub fn replacements(of: &Substitution) -> Table {
 }
 
 fn row(mend: &Mend) -> Vec<Cell> {
+    let mut row = replacement(mend);
+    row.extend([
+        level_word(mend.level).into(),
+        usize::from(mend.extent.further_parts).into(),
+        usize::from(mend.extent.other_packages).into(),
+        usize::from(mend.extent.other_pinouts).into(),
+        usize::from(mend.extent.values).into(),
+        mend.score.into(),
+        mend.after.efficiency.into(),
+        mend.after.binding_damage.into(),
+        mend.after.binding_function.into(),
+        mend.after.junction_c.into(),
+    ]);
+    row
+}
+
+/// What a table says first of a replacement, here and where many designs are told of.
+pub(crate) fn replacement(mend: &Mend) -> Vec<Cell> {
     let first = mend.replacing().next();
     vec![
         mend.rank.into(),
@@ -61,16 +79,6 @@ fn row(mend: &Mend) -> Vec<Cell> {
         first.and_then(|part| part.status).into(),
         troubles(mend).join("; ").into(),
         same_numbers(mend).join("; ").into(),
-        level_word(mend.level).into(),
-        usize::from(mend.extent.further_parts).into(),
-        usize::from(mend.extent.other_packages).into(),
-        usize::from(mend.extent.other_pinouts).into(),
-        usize::from(mend.extent.values).into(),
-        mend.score.into(),
-        mend.after.efficiency.into(),
-        mend.after.binding_damage.into(),
-        mend.after.binding_function.into(),
-        mend.after.junction_c.into(),
     ]
 }
 
