@@ -346,6 +346,15 @@ fn a_narrow_terminal_gets_paragraphs() {
 }
 
 #[test]
+fn a_narrow_terminal_is_told_of_catalogs_a_paragraph_a_file() {
+    let arguments = ["catalog", "check", "--catalogs", "catalogs-sample"];
+    let narrow = program(&repository("")).args(arguments).env("COLUMNS", "44").output().unwrap();
+    let narrow = told(narrow);
+    assert!(narrow.out.lines().all(|line| line.chars().count() <= 44), "{}", narrow.out);
+    assert!(narrow.out.starts_with("zeners.csv: rows 64, "), "{}", narrow.out);
+}
+
+#[test]
 fn no_escape_sequences_leave_the_program_but_on_a_terminal() {
     let folder = copy_of("fixed-12v");
     let zeners = folder.path().join("catalogs/zeners.csv");

@@ -7,6 +7,10 @@ use comfy_table::{Attribute, Cell, CellAlignment, Table, TableComponent};
 use eligible::file_name;
 use notice::{Notice, Severity};
 
+/// What the summary says of each file.
+const HEADINGS: [&str; 7] =
+    ["file", "rows", "unproven", "left out", "broken", "errors", "warnings"];
+
 /// One line of the summary: a catalog file.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Line {
@@ -26,6 +30,23 @@ pub struct Line {
     pub errors: usize,
     /// Notices about the file that are warnings.
     pub warnings: usize,
+}
+
+impl Line {
+    /// A cell for each of [`HEADINGS`].
+    fn cells(&self, look: &Look) -> [String; 7] {
+        let number = |n: usize| look.text(&grouped(&n.to_string()));
+        let of_rows = |n: usize| if self.is_there { number(n) } else { "-".to_owned() };
+        [
+            look.text(&self.file),
+            of_rows(self.rows),
+            of_rows(self.unproven),
+            of_rows(self.left_out),
+            of_rows(self.broken),
+            number(self.errors),
+            number(self.warnings),
+        ]
+    }
 }
 
 /// What a folder of catalogs holds and lacks.
@@ -114,17 +135,9 @@ impl<'a> CatalogCheck<'a> {
             let cell = Cell::new(text);
             if look.colour { cell.add_attribute(Attribute::Bold) } else { cell }
         };
-        table.set_header(
-            ["file", "rows", "unproven", "left out", "broken", "errors", "warnings"].map(title),
-        );
+        table.set_header(HEADINGS.map(title));
         for line in &self.lines {
-            let number = |n: usize| look.text(&grouped(&n.to_string()));
-            let counts = [line.rows, line.unproven, line.left_out, line.broken]
-                .map(|n| if line.is_there { number(n) } else { "-".to_owned() });
-            let mut row = vec![look.text(&line.file)];
-            row.extend(counts);
-            row.extend([number(line.errors), number(line.warnings)]);
-            table.add_row(row);
+            table.add_row(line.cells(look));
         }
         for (place, column) in table.column_iter_mut().enumerate() {
             column.set_padding((0, 2));
@@ -132,7 +145,21 @@ impl<'a> CatalogCheck<'a> {
                 column.set_cell_alignment(CellAlignment::Right);
             }
         }
-        table.trim_fmt()
+        let text = table.trim_fmt();
+        let widest = text.lines().map(textwrap::core::display_width).max().unwrap_or(0);
+        if widest > look.width { self.in_words(look) } else { text }
+    }
+
+    /// The table for a narrow terminal: a paragraph a file.
+    fn in_words(&self, look: &Look) -> String {
+        let paragraph = |line: &Line| {
+            let cells = line.cells(look);
+            let counts = HEADINGS.iter().zip(&cells).skip(1);
+            let counts: Vec<String> = counts.map(|(of, n)| format!("{of} {n}")).collect();
+            let file = cells.first().map_or("", String::as_str);
+            look.paragraph(&format!("{file}: {}", counts.join(", ")), 0, 2)
+        };
+        self.lines.iter().map(paragraph).collect::<String>().trim_end().to_owned()
     }
 }
 

@@ -22,7 +22,7 @@ pub fn nothing(reasons: &Nothing, sheet: &Sheet, problem: &Problem<'_>, look: &L
     let covered = problem.covered().to_string();
     let first = match covered.as_str() {
         "0" => format!(
-            "No part may be chosen for {}. Name a part behind the sheet to be told what bars it.",
+            "No part may be chosen for {}. `railwright whynot SHEET PART` tells what bars a part.",
             empty_slots(reasons)
         ),
         n => format!("None of {} combinations holds every check.", grouped(n)),
