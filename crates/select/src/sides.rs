@@ -27,18 +27,24 @@ pub(crate) fn meet_reference(
 ) -> Option<f64> {
     match reference {
         ReferenceFigures::Outlook(outlook) => outlook.may_suit(amp, ground).then_some(0.0),
-        ReferenceFigures::Complete(complete) => {
-            let network = Network {
-                line: &ground.divider_lines[complete.divider_line as usize],
-                divider: complete.divider,
-                pot: complete.pot.map(|p| &ground.pots[p as usize]),
-            };
-            WhileHolding::over(|t| {
-                assembly::input_checks(amp, &complete.bias, &network, &ground.aim, ground.rail(), t)
-            })
-            .ok()
-        }
+        ReferenceFigures::Complete(complete) => input_stress(ground, complete, amp).ok(),
     }
+}
+
+/// Stress where a complete reference side feeds an amplifier, or the first check that fails.
+pub(crate) fn input_stress(
+    ground: &Ground<'_>,
+    complete: &CompleteReference,
+    amp: &AmplifierAtRail,
+) -> Result<f64, Check> {
+    let network = Network {
+        line: &ground.divider_lines[complete.divider_line as usize],
+        divider: complete.divider,
+        pot: complete.pot.map(|p| &ground.pots[p as usize]),
+    };
+    WhileHolding::over(|t| {
+        assembly::input_checks(amp, &complete.bias, &network, &ground.aim, ground.rail(), t)
+    })
 }
 
 /// Stress where an amplifier drives a transistor; None where some check fails. Monotone in each
