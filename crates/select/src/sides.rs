@@ -10,10 +10,10 @@ pub(crate) mod reference;
 use crate::problem::Ground;
 use circuit::amplifier::AmplifierAtRail;
 use circuit::assembly::{self, Network};
-use circuit::check::WhileHolding;
+use circuit::check::{Check, WhileHolding};
 use circuit::drive;
 use circuit::pass::PassFigures;
-use reference::ReferenceFigures;
+use reference::{CompleteReference, ReferenceFigures};
 
 /// Stress where an amplifier meets a reference side; None where some check fails.
 ///

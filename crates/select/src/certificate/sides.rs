@@ -3,9 +3,10 @@
 use super::mark::{Mark, Names, together};
 use crate::grove::Share;
 use crate::problem::Ground;
+use crate::sides::input_stress;
 use crate::sides::reference::CompleteReference;
 use circuit::amplifier::AmplifierAtRail;
-use circuit::assembly::{self, Network, amplifier_checks, choose_divider};
+use circuit::assembly::{amplifier_checks, choose_divider};
 use circuit::check::{Check, WhileHolding};
 use circuit::divider::nominal_current_a;
 use circuit::pass::{CaseTemperatures, Mounted, PassFigures, Unmounted};
@@ -181,16 +182,7 @@ pub(super) fn failing_input(
     reference: &Reference,
     amp: &AmplifierAtRail,
 ) -> Option<Check> {
-    let complete = &reference.complete;
-    let network = Network {
-        line: &ground.divider_lines[complete.divider_line as usize],
-        divider: complete.divider,
-        pot: complete.pot.map(|p| &ground.pots[p as usize]),
-    };
-    WhileHolding::over(|t| {
-        assembly::input_checks(amp, &complete.bias, &network, &ground.aim, ground.rail(), t)
-    })
-    .err()
+    input_stress(ground, &reference.complete, amp).err()
 }
 
 /// The reference sides that hold by themselves, that the best figures of all amplifiers suit, and
